@@ -1,0 +1,240 @@
+package solver
+
+import (
+	"fmt"
+	"math"
+	"slices"
+	"sort"
+)
+
+// samePlace [m]: places closer than this are one place. Callers add up lengths and convert units, so two
+// spellings of a place differ by roundings; no detector, stop line or map is surveyed to a micrometre.
+const samePlace = 1e-6
+
+// control is a bottleneck or a signal, sorted by place.
+type control struct {
+	name     string
+	kind     NodeKind
+	place    float64
+	capacity Schedule
+}
+
+// controls lists bottlenecks and signals by place.
+func (s *Scenario) controls() []control {
+	list := make([]control, 0, len(s.Bottlenecks)+len(s.Signals))
+	for _, b := range s.Bottlenecks {
+		list = append(list, control{b.Name, BottleneckNode, b.Place, slices.Clone(b.Capacity)})
+	}
+	for i := range s.Signals {
+		g := &s.Signals[i]
+		list = append(list, control{g.Name, SignalNode, g.Place, g.schedule(s.Horizon)})
+	}
+	sort.SliceStable(list, func(i, j int) bool { return list[i].place < list[j].place })
+	return list
+}
+
+// segmentName of the segment with that index.
+func (s *Scenario) segmentName(i int) string {
+	if s.Segments[i].Name != "" {
+		return s.Segments[i].Name
+	}
+	return fmt.Sprintf("segment %d", i+1)
+}
+
+// layout lays out nodes and the segments between them, upstream first. roads maps each of these segments to
+// the scenario's segment that it is a part of.
+func (s *Scenario) layout() (nodes []node, segments []segment, roads []int) {
+	list := s.controls()
+	nodes = append(nodes, node{name: EntryName, kind: EntryNode, x: s.Origin, demand: slices.Clone(s.Entry.Demand), excess: s.Entry.Excess})
+	x := s.Origin
+	for i := range s.Segments {
+		end := x + s.Segments[i].Length
+		from := x
+		for len(list) > 0 && list[0].place < end-samePlace {
+			c := list[0]
+			list = list[1:]
+			if c.place <= from+samePlace {
+				nodes[len(nodes)-1].take(c)
+				continue
+			}
+			segments = append(segments, newSegment(s.segmentName(i), from, c.place, s.Segments[i].Relation.diagram))
+			roads = append(roads, i)
+			nodes = append(nodes, node{x: c.place})
+			nodes[len(nodes)-1].take(c)
+			from = c.place
+		}
+		segments = append(segments, newSegment(s.segmentName(i), from, end, s.Segments[i].Relation.diagram))
+		roads = append(roads, i)
+		nodes = append(nodes, node{name: s.joinName(i), kind: JoinNode, x: end})
+		x = end
+	}
+	last := &nodes[len(nodes)-1]
+	last.name, last.kind = ExitName, ExitNode
+	if len(s.Exit.Capacity) > 0 {
+		last.capacity = slices.Clone(s.Exit.Capacity)
+	}
+	for _, c := range list {
+		last.take(c)
+	}
+	link(nodes, segments)
+	return nodes, segments, roads
+}
+
+func (s *Scenario) joinName(i int) string {
+	if i+1 >= len(s.Segments) {
+		return ExitName
+	}
+	return "join " + s.segmentName(i) + "/" + s.segmentName(i+1)
+}
+
+// take puts a bottleneck or signal at the node.
+func (n *node) take(c control) {
+	n.name, n.kind = c.name, c.kind
+	n.capacity = least(n.capacity, c.capacity)
+}
+
+// link numbers the segments at each node.
+func link(nodes []node, segments []segment) {
+	for i := range nodes {
+		n := &nodes[i]
+		n.upSeg, n.downSeg, n.up, n.down = int32(i-1), int32(i), -1, -1
+		if i == len(segments) {
+			n.downSeg = -1
+		}
+		n.alike = i > 0 && i < len(segments) && segments[i-1].diagram.same(segments[i].diagram)
+	}
+}
+
+// newKernel returns a kernel that holds the traffic at time 0, with all waves that start then.
+func newKernel(s *Scenario) *kernel {
+	k := &kernel{horizon: s.Horizon}
+	k.nodes, k.segments, _ = s.layout()
+	k.reserve()
+	count := 0.0
+	for i := range k.segments {
+		count = k.start(int32(i), s.initialPieces(k, i), count)
+	}
+	for i := len(k.nodes) - 1; i >= 0; i-- {
+		k.settle(int32(i))
+		k.plan(int32(i))
+	}
+	return k
+}
+
+// reserve room for a moderate scenario, so that small ones do not grow their lists step by step.
+func (k *kernel) reserve() {
+	n := 64
+	for i := range k.nodes {
+		n += 8 + 8*len(k.nodes[i].capacity)
+	}
+	n = min(n, 1<<14)
+	k.regions = make([]region, 0, n)
+	k.bounds = make([]bound, 0, n)
+	k.fronts = make([]front, 0, n)
+	k.steps = make([]step, 0, n)
+	k.limits = make([]bounding, 0, n)
+	k.agenda = make(agenda, 0, 64)
+}
+
+// start puts the initial regions of a segment, upstream first, and the waves between them. It returns the
+// count at the segment's end: counts fall downstream by the vehicles in between.
+func (k *kernel) start(seg int32, pieces []ProfilePiece, count float64) float64 {
+	s := &k.segments[seg]
+	first := int32(-1)
+	last := int32(-1)
+	for _, p := range pieces {
+		for _, g := range s.initialRegions(p, seg) {
+			g.region.n = count
+			id := k.addRegion(g.region)
+			if last < 0 {
+				first = id
+				k.bounds[id].up = ^seg
+			} else {
+				born := int32(len(k.fronts))
+				if k.connect(last, id, g.region.x0, 0, count) {
+					k.record(last, id, born)
+				} else {
+					k.regions, k.bounds = k.regions[:id], k.bounds[:id] // one uniform state
+					id = last
+				}
+			}
+			last = id
+			count -= g.vehicles
+		}
+	}
+	k.boundDown(last, ^(seg + 1))
+	k.nodes[seg].down = first
+	k.nodes[seg+1].up = last
+	if last == first {
+		k.record(^seg, ^(seg + 1), int32(len(k.fronts)))
+	}
+	for g := first; ; {
+		k.schedule(g)
+		down := k.bounds[g].down
+		if down < 0 {
+			return count
+		}
+		g = k.fronts[down].down
+	}
+}
+
+// initialRegion is a region at time 0 with the vehicles in it.
+type initialRegion struct {
+	region   region
+	vehicles float64
+}
+
+// initialRegions cuts a profile piece at the corners of the relation. All parts share the spread of the
+// whole, so that a profile across the critical density still meets in one point.
+func (s *segment) initialRegions(p ProfilePiece, seg int32) []initialRegion {
+	length := p.End - p.Start
+	ka, kb := p.StartDensity, p.EndDensity
+	if math.Abs(kb-ka) <= s.densityTolerance {
+		mean := 0.5 * (ka + kb)
+		return []initialRegion{{uniformRegion(s.diagram, s.snap(mean), p.Start, 0, 0, seg), mean * length}}
+	}
+	spread := length / (kb - ka)
+	var out []initialRegion
+	for _, c := range s.cuts(ka, kb) {
+		piece := &s.diagram.pieces[c.piece]
+		x := p.Start + (c.from-ka)*spread
+		g := region{x0: x, k: c.from, c: piece.waveSpeed(c.from), s: spread, d: piece.d,
+			upLabel: c.from, downLabel: c.to, seg: seg, piece: int32(c.piece)}
+		g.r = piece.flow(c.from) - c.from*g.c
+		out = append(out, initialRegion{g, 0.5 * (c.from + c.to) * (c.to - c.from) * spread})
+	}
+	return out
+}
+
+// snap returns the corner of the relation that k is at, give or take a rounding, else k.
+func (s *segment) snap(k float64) float64 {
+	for i := range s.diagram.pieces {
+		if hi := s.diagram.pieces[i].hi; math.Abs(k-hi) <= s.densityTolerance {
+			return hi
+		}
+	}
+	return k
+}
+
+// cut is the part of a profile on one piece of the relation.
+type cut struct {
+	piece    int
+	from, to float64
+}
+
+// cuts lists the parts of a profile from density a to b.
+func (s *segment) cuts(a, b float64) []cut {
+	a, b = s.snap(a), s.snap(b)
+	d := s.diagram
+	var out []cut
+	if a < b {
+		for i := d.pieceAbove(a); i <= d.pieceBelow(b); i++ {
+			out = append(out, cut{i, math.Max(a, d.pieces[i].lo), math.Min(b, d.pieces[i].hi)})
+		}
+		return out
+	}
+	for i := d.pieceBelow(a); i >= d.pieceAbove(b); i-- {
+		out = append(out, cut{i, math.Min(a, d.pieces[i].hi), math.Max(b, d.pieces[i].lo)})
+	}
+	return out
+}

@@ -1,0 +1,125 @@
+package solver
+
+import (
+	"fmt"
+	"strings"
+)
+
+// Rule names the requirement that an input broke. The values are stable: callers may switch on them.
+type Rule string
+
+const (
+	// RuleFinite: the number must be finite (not NaN, not infinite).
+	RuleFinite Rule = "FINITE"
+	// RulePositive: the number must be greater than zero.
+	RulePositive Rule = "POSITIVE"
+	// RuleNotNegative: the number must be zero or greater.
+	RuleNotNegative Rule = "NOT_NEGATIVE"
+	// RuleRange: the number must lie in the stated range.
+	RuleRange Rule = "RANGE"
+	// RuleOrder: the entries must be in rising order.
+	RuleOrder Rule = "ORDER"
+	// RuleRequired: something that must be given is missing.
+	RuleRequired Rule = "REQUIRED"
+	// RuleConflict: two inputs contradict each other.
+	RuleConflict Rule = "CONFLICT"
+	// RuleConcave: a flow-density relation must be concave.
+	RuleConcave Rule = "CONCAVE"
+	// RuleCover: the pieces must cover the corridor without gap or overlap.
+	RuleCover Rule = "COVER"
+	// RuleUnique: names and places must not be used twice.
+	RuleUnique Rule = "UNIQUE"
+	// RuleUnknown: the name refers to nothing in the scenario.
+	RuleUnknown Rule = "UNKNOWN"
+	// RuleFits: a standing queue must fit into the road behind it.
+	RuleFits Rule = "FITS"
+	// RuleClosedForm: the input asks for something whose exact solution leaves the family that this
+	// solver holds in closed form; it is refused, never approximated.
+	RuleClosedForm Rule = "CLOSED_FORM"
+)
+
+// Violation is one broken requirement.
+type Violation struct {
+	// Field is the path of the input, such as "Segments[1].Length".
+	Field string
+	// Rule is the requirement that was broken.
+	Rule Rule
+	// Value is what was given, printed; empty where nothing was given.
+	Value string
+	// Allowed says in words what would be accepted.
+	Allowed string
+}
+
+// String returns the violation as one line.
+func (v Violation) String() string {
+	if v.Value == "" {
+		return fmt.Sprintf("%s: %s", v.Field, v.Allowed)
+	}
+	return fmt.Sprintf("%s = %s: %s", v.Field, v.Value, v.Allowed)
+}
+
+// InvalidError lists everything that is wrong with an input. Nothing was computed.
+type InvalidError struct {
+	Violations []Violation
+}
+
+// Error returns all violations, separated by semicolons.
+func (e *InvalidError) Error() string {
+	lines := make([]string, len(e.Violations))
+	for i, v := range e.Violations {
+		lines[i] = v.String()
+	}
+	return "invalid scenario: " + strings.Join(lines, "; ")
+}
+
+// LimitError says that a solve was given up because it would have cost more than the caller's [Budget].
+type LimitError struct {
+	// Limit is the exhausted one: "interactions" or "memory".
+	Limit string
+	// Max is the limit's value: wave interactions, or bytes.
+	Max int64
+	// Reached is the scenario time in seconds up to which the solution had been built.
+	Reached float64
+}
+
+// Error describes the exhausted limit.
+func (e *LimitError) Error() string {
+	return fmt.Sprintf("limit of %d %s reached at scenario time %g s", e.Max, e.Limit, e.Reached)
+}
+
+// ClosedFormError says that the exact solution left the family that this solver holds in closed form:
+// from Time on, what crosses Node can no longer be written down exactly. It is refused, never approximated.
+type ClosedFormError struct {
+	// Node is the name of the node where it happened.
+	Node string
+	// Time is when, in seconds of scenario time.
+	Time float64
+	// What describes the case in words.
+	What string
+}
+
+// Error describes the refused case.
+func (e *ClosedFormError) Error() string {
+	return fmt.Sprintf("no closed form at node %q from %g s on: %s", e.Node, e.Time, e.What)
+}
+
+// violations collects broken requirements under a field path.
+type violations struct {
+	list []Violation
+}
+
+func (v *violations) add(field string, rule Rule, value any, allowed string) {
+	text := ""
+	if value != nil {
+		text = fmt.Sprint(value)
+	}
+	v.list = append(v.list, Violation{Field: field, Rule: rule, Value: text, Allowed: allowed})
+}
+
+// err returns the collected violations as an error, or nil where there are none.
+func (v *violations) err() error {
+	if len(v.list) == 0 {
+		return nil
+	}
+	return &InvalidError{Violations: v.list}
+}

@@ -1,0 +1,168 @@
+package solver
+
+import "math"
+
+// FrontKind is the nature of a front.
+type FrontKind int8
+
+const (
+	// Shock: the density rises across it downstream, and waves of both sides run into it.
+	Shock FrontKind = iota
+	// Contact: the density jumps, and the front moves with the wave speed of a straight piece of the
+	// relation that holds both densities.
+	Contact
+	// Edge: the density is continuous and only its gradient jumps: the edge of a fan or of a profile.
+	Edge
+)
+
+// String returns the kind in lower case.
+func (k FrontKind) String() string { return [...]string{"shock", "contact", "edge"}[k] }
+
+// FrontEnd says how a front ends.
+type FrontEnd int8
+
+const (
+	// AtHorizon: it still exists at the end of the solved time.
+	AtHorizon FrontEnd = iota
+	// Merged: it met another front.
+	Merged
+	// AtNode: it reached a node.
+	AtNode
+)
+
+// String returns the end in lower case.
+func (e FrontEnd) String() string { return [...]string{"horizon", "merged", "node"}[e] }
+
+// front is a boundary between two regions of one segment.
+type front struct {
+	x0, t0 float64 // birth
+	speed  float64 // of a straight front
+	end    float64 // +Inf while it lives
+	up     int32   // region upstream of it
+	first  int32   // region upstream of it at birth, which an equal one may have taken over since
+	down   int32   // region downstream of it
+	path   int32   // index of the curved path; -1 for a straight front
+	into   int32   // first front born where it ended; -1 for none
+	seg    int32
+	kind   FrontKind
+	ends   FrontEnd
+}
+
+// path is a curved shock path: the places where the counts of its two sides are equal (they are the two
+// candidates for the least count, and upstream of the shock the upstream one is less). In the frame of a
+// characteristic of one side, Y = X - frame*T, the difference of the counts is a quadratic in Y,
+//
+//	A Y² + B Y + C = 0,  A = (mD-mU)/2,  B = (kD-kU) - T mD c',  C = T (dq' + T mD c'²/2),
+//
+// with the gradients m of the sides at that time, the jump dq' = qU' - qD' of flow and the wave speed c' of
+// the downstream side in the frame. The count difference rises in place at an admissible shock (its derivative
+// is kD-kU > 0), which picks the root. Both facts are the Lax-Hopf/Newell least-count principle
+// (Newell 1993, Transp. Res. B 27, 281-287) written for linear profiles.
+type path struct {
+	up, down        local
+	frame, relSpeed float64 // speed of the frame, and c' of the downstream side in it
+	jumpFlow        float64 // qU - qD at birth, at rest
+	frameJumpFlow   float64 // the same in the frame
+	// until is the time after birth at which the formula's shock would have no jump left. One of the sides is
+	// used up before; past it the formula follows a root that is no shock.
+	until              float64
+	upPiece, downPiece int32
+}
+
+// newPath returns the path of a shock born at (x, t) between two regions. Jumps of density and flow below the
+// segment's tolerances are taken as none: the shock grows from nothing, or starts at rest.
+func newPath(u, d *region, x, t float64, seg *segment) path {
+	p := path{up: u.from(x, t), down: d.from(x, t), upPiece: u.piece, downPiece: d.piece}
+	if math.Abs(p.down.k-p.up.k) <= seg.densityTolerance {
+		p.down.k = p.up.k
+	}
+	p.jumpFlow = p.up.flow() - p.down.flow()
+	if math.Abs(p.jumpFlow) <= seg.flowTolerance {
+		p.jumpFlow = 0
+	}
+	p.frame = p.down.c
+	if !p.up.uniform() {
+		p.frame = p.up.c
+	}
+	if !p.down.uniform() {
+		p.relSpeed = p.down.c - p.frame
+	}
+	p.frameJumpFlow = p.jumpFlow - p.frame*(p.up.k-p.down.k)
+	p.until = p.lastsUntil()
+	return p
+}
+
+// lastsUntil is the first zero of the square of the jump, which is a quadratic in time once multiplied by the
+// spreads of the two sides.
+func (p *path) lastsUntil() float64 {
+	jump := p.down.k - p.up.k
+	var c cubic
+	switch up, down := p.up.uniform(), p.down.uniform(); {
+	case up:
+		c = cubic{jump * jump * p.down.s, jump*jump*p.down.d - 2*p.frameJumpFlow}
+	case down:
+		c = cubic{jump * jump * p.up.s, jump*jump*p.up.d + 2*p.frameJumpFlow}
+	default:
+		c = cubic{
+			jump * jump * p.up.s * p.down.s,
+			jump*jump*(p.up.s*p.down.d+p.up.d*p.down.s) - 2*(jump*p.relSpeed*p.up.s+p.frameJumpFlow*(p.up.s-p.down.s)),
+			jump*jump*p.up.d*p.down.d - 2*(jump*p.relSpeed*p.up.d+p.frameJumpFlow*(p.up.d-p.down.d)) + p.relSpeed*p.relSpeed,
+		}
+	}
+	if jump == 0 {
+		return math.Inf(1)
+	}
+	roots, n := c.roots(0, math.Inf(1))
+	if n == 0 {
+		return math.Inf(1)
+	}
+	return roots[0]
+}
+
+// offset is the distance from the place of birth a time T after birth, up to p.until.
+func (p *path) offset(T float64) float64 {
+	if T <= 0 {
+		return 0
+	}
+	mU, mD := p.up.gradient(T), p.down.gradient(T)
+	jump := p.down.k - p.up.k
+	dm := mD - mU
+	b := jump - T*mD*p.relSpeed
+	c := T * (p.frameJumpFlow + 0.5*T*mD*p.relSpeed*p.relSpeed)
+	// B² - 4AC with the terms that cancel taken out by hand; its root is the jump of density at T.
+	square := jump*jump - 2*T*(jump*mD*p.relSpeed+dm*p.frameJumpFlow) + mU*mD*p.relSpeed*p.relSpeed*T*T
+	root := math.Sqrt(math.Max(0, square))
+	if b > 0 {
+		return p.frame*T - 2*c/(b+root)
+	}
+	return p.frame*T + (root-b)/dm
+}
+
+// line is a straight path through (x0, t0).
+type line struct {
+	x0, t0, speed float64
+}
+
+func (l line) at(t float64) float64 { return l.x0 + l.speed*(t-l.t0) }
+
+func (k *kernel) line(f *front) line { return line{f.x0, f.t0, f.speed} }
+
+// place of a front at time t.
+func (k *kernel) place(f *front, t float64) float64 {
+	if f.path < 0 {
+		return f.x0 + f.speed*(t-f.t0)
+	}
+	return f.x0 + k.paths[f.path].offset(t-f.t0)
+}
+
+// velocity of a front at time t, from the densities on its two sides.
+func (k *kernel) velocity(f *front, t float64) float64 {
+	if f.path < 0 {
+		return f.speed
+	}
+	p := &k.paths[f.path]
+	T := t - f.t0
+	X := p.offset(T)
+	d := k.segments[f.seg].diagram
+	return d.secant(int(p.upPiece), p.up.density(X, T), int(p.downPiece), p.down.density(X, T))
+}

@@ -1,0 +1,285 @@
+package solver
+
+import (
+	"context"
+	"math"
+	"unsafe"
+)
+
+// kernel builds a solution: it holds the live order of regions and fronts along the road and turns each event
+// - a region used up, a node whose surroundings changed - into new fronts. It knows neither what kinds of
+// node there are nor what will be asked of the solution.
+type kernel struct {
+	horizon  float64
+	segments []segment
+	nodes    []node
+
+	regions []region
+	bounds  []bound // of the regions, parallel to them
+	fronts  []front
+	paths   []path
+	steps   []step     // what happened, in order
+	limits  []bounding // what bounded each region downstream, over time
+
+	agenda agenda
+	now    float64
+	waves  []wave // scratch of fallingWaves
+
+	interactions int64
+	refused      *ClosedFormError
+}
+
+// segment is a homogeneous stretch of road as the kernel sees it, with what counts as equal on it.
+type segment struct {
+	name             string
+	start, end       float64
+	diagram          *diagram
+	densityTolerance float64
+	flowTolerance    float64
+	speedTolerance   float64
+}
+
+func newSegment(name string, start, end float64, d *diagram) segment {
+	return segment{
+		name: name, start: start, end: end, diagram: d,
+		densityTolerance: closeness * d.jam,
+		flowTolerance:    closeness * d.capacity,
+		speedTolerance:   closeness * d.freeSpeed,
+	}
+}
+
+// bound is what a region lies between while it lives: fronts, or nodes as ^index.
+type bound struct {
+	up, down int32
+	limits   int32   // latest entry of this region in kernel.limits, -1 for none
+	stamp    uint32  // of its event on the agenda
+	due      float64 // when it will be used up
+	died     float64 // when it was, +Inf while it lives
+}
+
+// bounding says what a region is bounded by downstream from a time on: a front, or a node as ^index.
+type bounding struct {
+	since  float64
+	bound  int32
+	before int32 // the region's previous entry, -1 for none
+}
+
+// step records one event: the fronts it put from firstFront to lastFront (exclusive, possibly none) between
+// the regions up and down of one segment. At a node the sides are recorded by two steps, and up or down is
+// the node as ^index.
+type step struct {
+	time                  float64
+	up, down              int32
+	firstFront, lastFront int32
+}
+
+func (k *kernel) addRegion(g region) int32 {
+	id := int32(len(k.regions))
+	k.regions = append(k.regions, g)
+	k.bounds = append(k.bounds, bound{died: math.Inf(1), due: math.Inf(1), limits: -1})
+	return id
+}
+
+// addFront puts a front between two regions that are, from now on, neighbours.
+func (k *kernel) addFront(f front) {
+	id := int32(len(k.fronts))
+	f.end, f.into, f.seg, f.first = math.Inf(1), -1, k.regions[f.up].seg, f.up
+	k.fronts = append(k.fronts, f)
+	k.boundDown(f.up, id)
+	k.bounds[f.down].up = id
+}
+
+// boundDown makes a front, or a node as ^index, the downstream bound of a region from now on.
+func (k *kernel) boundDown(g, bound int32) {
+	b := &k.bounds[g]
+	b.down = bound
+	k.limits = append(k.limits, bounding{since: k.now, bound: bound, before: b.limits})
+	b.limits = int32(len(k.limits) - 1)
+}
+
+// run processes events until the horizon.
+func (k *kernel) run(ctx context.Context, budget Budget) error {
+	for len(k.agenda) > 0 {
+		e := k.agenda.pop()
+		if e.time > k.horizon {
+			return nil
+		}
+		if !k.current(e) {
+			continue
+		}
+		k.now = math.Max(k.now, e.time)
+		k.interactions++
+		if err := k.check(ctx, budget); err != nil {
+			return err
+		}
+		if e.target < 0 {
+			k.visit(^e.target)
+		} else {
+			k.usedUp(e.target)
+		}
+		if k.refused != nil {
+			return k.refused
+		}
+	}
+	return nil
+}
+
+func (k *kernel) current(e event) bool {
+	if e.target < 0 {
+		return k.nodes[^e.target].stamp == e.stamp
+	}
+	return k.bounds[e.target].stamp == e.stamp
+}
+
+// contextInterval is how many interactions pass between looks at the context: some 0.1 ms of work.
+const contextInterval = 512
+
+func (k *kernel) check(ctx context.Context, budget Budget) error {
+	if k.interactions > budget.Interactions {
+		return &LimitError{Limit: "interactions", Max: budget.Interactions, Reached: k.now}
+	}
+	if k.interactions%contextInterval != 0 {
+		return nil
+	}
+	if k.bytes() > budget.Memory {
+		return &LimitError{Limit: "bytes", Max: budget.Memory, Reached: k.now}
+	}
+	return ctx.Err()
+}
+
+// bytes is the size of what the solution holds.
+func (k *kernel) bytes() int64 {
+	size := cap(k.regions)*int(unsafe.Sizeof(region{})) + cap(k.bounds)*int(unsafe.Sizeof(bound{})) +
+		cap(k.fronts)*int(unsafe.Sizeof(front{})) + cap(k.paths)*int(unsafe.Sizeof(path{})) +
+		cap(k.steps)*int(unsafe.Sizeof(step{})) + cap(k.limits)*int(unsafe.Sizeof(bounding{})) + cap(k.agenda)*int(unsafe.Sizeof(event{}))
+	for i := range k.nodes {
+		size += cap(k.nodes[i].history) * int(unsafe.Sizeof(passage{}))
+	}
+	return int64(size)
+}
+
+// simultaneous is the end of the time that counts as now.
+func (k *kernel) simultaneous() float64 { return k.now + k.slack() }
+
+// slack is the difference of times that counts as none.
+func (k *kernel) slack() float64 { return closeness * k.horizon }
+
+// usedUp takes out a region whose bounds have met, with all neighbours that are used up at the same time and
+// place, and solves what is then between their outer neighbours.
+func (k *kernel) usedUp(g int32) {
+	until := k.simultaneous()
+	first, last := g, g
+	for up := k.bounds[first].up; up >= 0; up = k.bounds[first].up {
+		next := k.fronts[up].up
+		if k.bounds[next].due > until {
+			break
+		}
+		first = next
+	}
+	for down := k.bounds[last].down; down >= 0; down = k.bounds[last].down {
+		next := k.fronts[down].down
+		if k.bounds[next].due > until {
+			break
+		}
+		last = next
+	}
+	up, down := k.bounds[first].up, k.bounds[last].down
+	switch {
+	case up < 0:
+		k.visit(^up)
+	case down < 0:
+		k.visit(^down)
+	default:
+		k.merge(first, last)
+	}
+}
+
+// merge solves what meets where the regions from first to last are used up, and ends them.
+func (k *kernel) merge(first, last int32) {
+	a, b := k.bounds[first].up, k.bounds[last].down
+	x := k.meetingPlace(a, b)
+	up, down := k.fronts[a].up, k.fronts[b].down
+	born := int32(len(k.fronts))
+	n := k.regions[up].count(x, k.now)
+	if k.connect(up, down, x, k.now, n) {
+		k.retire(first, last, Merged, born)
+	} else {
+		k.retire(first, last, Merged, -1)
+		k.absorb(up, down)
+	}
+	k.record(up, down, born)
+	k.reschedule(up)
+}
+
+// meetingPlace of two fronts now: that of a straight one where there is one, being the more exact.
+func (k *kernel) meetingPlace(a, b int32) float64 {
+	fa, fb := &k.fronts[a], &k.fronts[b]
+	if fa.path >= 0 && fb.path < 0 {
+		return k.place(fb, k.now)
+	}
+	return k.place(fa, k.now)
+}
+
+// retire ends the regions from first to last and all fronts that bound them.
+func (k *kernel) retire(first, last int32, ends FrontEnd, into int32) {
+	k.endFront(k.bounds[first].up, ends, into)
+	for g := first; ; g = k.fronts[k.bounds[g].down].down {
+		b := &k.bounds[g]
+		b.died = k.now
+		b.stamp++
+		k.endFront(b.down, ends, into)
+		if g == last {
+			return
+		}
+	}
+}
+
+func (k *kernel) endFront(id int32, ends FrontEnd, into int32) {
+	if id < 0 {
+		return
+	}
+	f := &k.fronts[id]
+	f.end, f.ends, f.into = k.now, ends, into
+}
+
+// absorb makes up and the equal uniform region down one: up takes over the downstream bound.
+func (k *kernel) absorb(up, down int32) {
+	b := &k.bounds[down]
+	b.died = k.now
+	b.stamp++
+	k.boundDown(up, b.down)
+	if b.down >= 0 {
+		k.fronts[b.down].up = up
+		return
+	}
+	n := &k.nodes[^b.down]
+	n.up = up
+	n.note(k.now)
+}
+
+// record notes the fronts born between two regions since born; a node stands for a region as ^index.
+func (k *kernel) record(up, down, born int32) {
+	k.steps = append(k.steps, step{time: k.now, up: up, down: down, firstFront: born, lastFront: int32(len(k.fronts))})
+}
+
+// reschedule puts the regions from first on downstream that are new or have new bounds on the agenda: up to
+// and including the first that is neither.
+func (k *kernel) reschedule(first int32) {
+	for g := first; ; {
+		k.schedule(g)
+		down := k.bounds[g].down
+		if down < 0 || k.fronts[down].t0 < k.now {
+			return
+		}
+		g = k.fronts[down].down
+	}
+}
+
+func (k *kernel) schedule(g int32) {
+	b := &k.bounds[g]
+	b.stamp++
+	b.due = k.meeting(g)
+	if b.due <= k.horizon {
+		k.agenda.push(event{time: b.due, target: g, stamp: b.stamp})
+	}
+}

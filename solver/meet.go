@@ -1,0 +1,250 @@
+package solver
+
+import "math"
+
+// cubic holds the coefficients of c[0] + c[1] T + c[2] T² + c[3] T³.
+type cubic [4]float64
+
+func (c *cubic) at(T float64) float64    { return c[0] + T*(c[1]+T*(c[2]+T*c[3])) }
+func (c *cubic) slope(T float64) float64 { return c[1] + T*(2*c[2]+3*T*c[3]) }
+
+// descent returns the first T in [from, to] at which the polynomial goes from positive to negative, +Inf
+// where it does not. Where it is not positive at from and falling there, that is from itself: rounding has
+// hidden the crossing. At from = 0 exact zero roots are taken out first, for curves that start together.
+func (c cubic) descent(from, to float64) float64 {
+	if from == 0 {
+		for c[0] == 0 && (c[1] != 0 || c[2] != 0 || c[3] != 0) {
+			c = cubic{c[1], c[2], c[3], 0}
+			if c[0] < 0 {
+				return 0
+			}
+		}
+	}
+	if c.at(from) <= 0 && c.slope(from) < 0 {
+		return from
+	}
+	roots, n := c.roots(from, to)
+	for _, T := range roots[:n] {
+		if c.slope(T) < 0 {
+			return T
+		}
+	}
+	return math.Inf(1)
+}
+
+// roots returns the real roots in [from, to] in order, and their number. A double root may be left out.
+func (c *cubic) roots(from, to float64) (roots [3]float64, n int) {
+	keep := func(T float64) {
+		if T >= from && T <= to {
+			roots[n] = T
+			n++
+		}
+	}
+	switch {
+	case c[3] != 0:
+		return c.cubicRoots(from, to)
+	case c[2] != 0:
+		disc := c[1]*c[1] - 4*c[2]*c[0]
+		if disc < 0 {
+			return roots, 0
+		}
+		w := -0.5 * (c[1] + math.Copysign(math.Sqrt(disc), c[1]))
+		a, b := w/c[2], c[0]/w
+		keep(math.Min(a, b))
+		keep(math.Max(a, b))
+	case c[1] != 0:
+		keep(-c[0] / c[1])
+	}
+	return roots, n
+}
+
+// cubicRoots looks at the three stretches of [from, to] between the turning points; each holds at most one.
+func (c *cubic) cubicRoots(from, to float64) (roots [3]float64, n int) {
+	lo, hi := c.turns()
+	ends := [4]float64{from, math.Max(from, math.Min(to, lo)), math.Max(from, math.Min(to, hi)), to}
+	for i := 0; i < 3; i++ {
+		a, b := ends[i], ends[i+1]
+		fa, fb := c.at(a), c.at(b)
+		if a >= b || fa*fb > 0 {
+			continue
+		}
+		sign := 1.0
+		if fa < 0 {
+			sign = -1
+		}
+		roots[n] = fallingRoot(func(T float64) float64 { return sign * c.at(T) }, a, b)
+		n++
+	}
+	return roots, n
+}
+
+// turns returns the two places where the cubic's slope is zero, in order; +Inf where there are none.
+func (c *cubic) turns() (lo, hi float64) {
+	disc := c[2]*c[2] - 3*c[3]*c[1]
+	if disc <= 0 {
+		return math.Inf(1), math.Inf(1)
+	}
+	w := -(c[2] + math.Copysign(math.Sqrt(disc), c[2]))
+	a, b := w/(3*c[3]), c[1]/w
+	return math.Min(a, b), math.Max(a, b)
+}
+
+// fallingRoot returns the root of a continuous function with f(a) >= 0 >= f(b) to the last digit, by regula
+// falsi with the Illinois step and bisection when that is slow (Dowell & Jarratt 1971, BIT 11, 168-174). A NaN
+// counts as negative: past the end of the function's domain.
+func fallingRoot(f func(float64) float64, a, b float64) float64 {
+	fa, fb := f(a), f(b)
+	if fa <= 0 {
+		return a
+	}
+	for i := 0; i < 200; i++ {
+		width := b - a
+		m := a + width*fa/(fa-fb)
+		if i%3 == 2 || !(m > a && m < b) {
+			m = a + 0.5*width
+		}
+		if m <= a || m >= b {
+			break // neighbours in floating point
+		}
+		fm := f(m)
+		switch {
+		case fm > 0:
+			a, fa = m, fm
+			fb *= 0.5
+		case fm == 0:
+			return m
+		default:
+			b, fb = m, fm
+			fa *= 0.5
+		}
+		if b-a <= 0x1p-51*math.Abs(b) {
+			break
+		}
+	}
+	return b
+}
+
+// crossing returns the first time from now on at which the shock meets a straight line that lies to one side of
+// it, up to limit; +Inf where it does not. x0, t0 is the shock's birth; slack is how far before now a meeting
+// may be found and still count as now. along says which side of the shock, if any, the line is a characteristic
+// of: there the count is linear in time.
+//
+// On the line the difference of the two sides' counts is a rational function of time, zero where the shock
+// is on the line. It is also zero where the other root of the path's quadratic is: there the difference falls
+// in place, that is, the upstream side, continued, is the denser one.
+func (p *path) crossing(x0, t0 float64, l line, along side, now, limit, slack float64) float64 {
+	e := l.at(t0) - x0
+	if l.t0 == t0 {
+		e = l.x0 - x0
+	}
+	c := p.differenceAlong(e, l.speed, along)
+	for c[0] == 0 && (c[1] != 0 || c[2] != 0 || c[3] != 0) {
+		c = cubic{c[1], c[2], c[3], 0} // they start at one point: that is no meeting
+	}
+	roots, n := c.roots(now-t0-slack, math.Min(p.until, limit-t0))
+	for _, T := range roots[:n] {
+		X := e + l.speed*T
+		if p.down.density(X, T)-p.up.density(X, T) > closeness*(p.down.k+p.up.k) {
+			return math.Max(now, t0+T)
+		}
+	}
+	return math.Inf(1)
+}
+
+// differenceAlong is the difference of the counts of the two sides along a line, times its denominators.
+func (p *path) differenceAlong(e, v float64, along side) cubic {
+	var c cubic
+	c[0] = (p.down.k - p.up.k) * e
+	c[1] = p.jumpFlow - v*(p.up.k-p.down.k)
+	var up, down rational
+	if along == upSide {
+		p.up.ride(e, &c, 1)
+	} else {
+		up = p.up.bulge(e, v)
+	}
+	if along == downSide {
+		p.down.ride(e, &c, -1)
+	} else {
+		down = p.down.bulge(e, v)
+	}
+	return combine(c, up, down)
+}
+
+// side names one side of a front.
+type side int8
+
+const (
+	neither side = iota
+	upSide
+	downSide
+)
+
+// rational is the term (u0 + u1 T)²/(2 (s0 + s1 T)) by which the count of a linear profile along a line falls
+// short of a linear function; flat where there is none.
+type rational struct {
+	u0, u1, s0, s1 float64
+	present        bool
+}
+
+// bulge is that term of a side along the line at distance e at birth with speed v.
+func (l *local) bulge(e, v float64) rational {
+	if l.uniform() {
+		return rational{}
+	}
+	return rational{u0: e, u1: v - l.c, s0: l.s, s1: l.d, present: true}
+}
+
+// ride adds to c the count of a side along one of its own characteristics, beyond the linear part that all
+// lines have: (k'-k)²/2 (s + d T), where k' is the characteristic's density.
+func (l *local) ride(e float64, c *cubic, sign float64) {
+	if l.uniform() {
+		return
+	}
+	dk := e / l.s
+	c[0] -= sign * 0.5 * dk * dk * l.s
+	c[1] -= sign * 0.5 * dk * dk * l.d
+}
+
+// combine returns (linear - up + down) times the denominators that it has, each with its sign taken so that
+// the sign of the result is that of the sum. The linear part is in c[0], c[1].
+func combine(c cubic, up, down rational) cubic {
+	switch {
+	case up.present && down.present:
+		return combineBoth(c, up, down)
+	case up.present:
+		return combineOne(c, up, -1)
+	case down.present:
+		return combineOne(c, down, 1)
+	}
+	return c
+}
+
+func combineOne(c cubic, r rational, sign float64) cubic {
+	w := math.Copysign(1, r.s0)
+	if r.s0 == 0 {
+		w = math.Copysign(1, r.s1)
+	}
+	return cubic{
+		w * (2*c[0]*r.s0 + sign*r.u0*r.u0),
+		w * (2*(c[0]*r.s1+c[1]*r.s0) + 2*sign*r.u0*r.u1),
+		w * (2*c[1]*r.s1 + sign*r.u1*r.u1),
+		0,
+	}
+}
+
+func combineBoth(c cubic, up, down rational) cubic {
+	w := math.Copysign(1, up.s0) * math.Copysign(1, down.s0)
+	// s = sU sD, and each bulge times the other's spread.
+	s0, s1, s2 := up.s0*down.s0, up.s0*down.s1+up.s1*down.s0, up.s1*down.s1
+	uu := square(up)
+	dd := square(down)
+	return cubic{
+		w * (2*c[0]*s0 - uu[0]*down.s0 + dd[0]*up.s0),
+		w * (2*(c[0]*s1+c[1]*s0) - uu[1]*down.s0 - uu[0]*down.s1 + dd[1]*up.s0 + dd[0]*up.s1),
+		w * (2*(c[0]*s2+c[1]*s1) - uu[2]*down.s0 - uu[1]*down.s1 + dd[2]*up.s0 + dd[1]*up.s1),
+		w * (2*c[1]*s2 - uu[2]*down.s1 + dd[2]*up.s1),
+	}
+}
+
+// square returns the coefficients of (u0 + u1 T)².
+func square(r rational) [3]float64 { return [3]float64{r.u0 * r.u0, 2 * r.u0 * r.u1, r.u1 * r.u1} }

@@ -1,0 +1,166 @@
+package solver
+
+import "math"
+
+// meeting is when the bounds of a live region meet, +Inf where they do not before the horizon.
+func (k *kernel) meeting(g int32) float64 {
+	b := k.bounds[g]
+	if b.up < 0 && b.down < 0 {
+		return math.Inf(1)
+	}
+	upLine, upPath := k.boundary(b.up)
+	downLine, downPath := k.boundary(b.down)
+	r := &k.regions[g]
+	switch {
+	case upPath == nil && downPath == nil:
+		return k.linesMeet(r, b, upLine, downLine)
+	case downPath == nil:
+		return upPath.crossing(upLine.x0, upLine.t0, downLine, alongIf(r, b.down, downSide), k.now, k.limit(b, r), k.slack())
+	case upPath == nil:
+		return downPath.crossing(downLine.x0, downLine.t0, upLine, alongIf(r, b.up, upSide), k.now, k.limit(b, r), k.slack())
+	case r.uniform():
+		return k.pathsMeet(b.up, b.down, k.limit(b, r))
+	default:
+		return k.labelsMeet(r, b.up, b.down, k.limit(b, r))
+	}
+}
+
+// boundary of a region: a straight line, or a path that starts at the line's origin.
+func (k *kernel) boundary(id int32) (line, *path) {
+	if id < 0 {
+		return line{x0: k.nodes[^id].x, t0: 0}, nil
+	}
+	f := &k.fronts[id]
+	if f.path < 0 {
+		return k.line(f), nil
+	}
+	return k.line(f), &k.paths[f.path]
+}
+
+// alongIf says that a straight bound of a profile is one of the profile's characteristics, unless it is a node.
+func alongIf(r *region, bound int32, s side) side {
+	if bound < 0 || r.uniform() {
+		return neither
+	}
+	return s
+}
+
+// limit is the time up to which the paths around a region can be followed: a little beyond the horizon, or
+// when the characteristics of a profile involved meet.
+func (k *kernel) limit(b bound, r *region) float64 {
+	t := math.Min(k.horizon*(1+closeness), r.focus())
+	if b.up >= 0 {
+		t = math.Min(t, k.regions[k.fronts[b.up].up].focus())
+	}
+	if b.down >= 0 {
+		t = math.Min(t, k.regions[k.fronts[b.down].down].focus())
+	}
+	return t
+}
+
+// exhausts is when a shock has consumed the last density of the profile on one side of it, +Inf where it never
+// does. Up to then the densities beside it lie on the relation, so that it is a true shock and consumes more.
+func (k *kernel) exhausts(id int32, s side, limit float64) float64 {
+	f := &k.fronts[id]
+	p := &k.paths[f.path]
+	l, last := &p.up, k.regions[f.up].upLabel
+	if s == downSide {
+		l, last = &p.down, k.regions[f.down].downLabel
+	}
+	if l.uniform() {
+		return math.Inf(1)
+	}
+	dk := last - l.k
+	edge := line{x0: f.x0 + dk*l.s, t0: f.t0, speed: l.c + l.d*dk}
+	return p.crossing(f.x0, f.t0, edge, s, f.t0, limit, 0)
+}
+
+// linesMeet: two characteristics of one profile meet at its focus; other straight bounds where they cross.
+func (k *kernel) linesMeet(r *region, b bound, up, down line) float64 {
+	if !r.uniform() && b.up >= 0 && b.down >= 0 {
+		return r.focus()
+	}
+	closing := up.speed - down.speed
+	if closing <= 0 {
+		return math.Inf(1)
+	}
+	from := math.Max(up.t0, down.t0)
+	gap := down.at(from) - up.at(from)
+	if up.t0 == down.t0 {
+		gap = down.x0 - up.x0
+	}
+	return math.Max(k.now, from+gap/closing)
+}
+
+// labelsMeet: both bounds of a profile are curved shocks. They only ever consume its characteristics, so the
+// span of densities between them falls to zero exactly once. When one of them has consumed all, or at the
+// profile's focus, that has happened for certain.
+func (k *kernel) labelsMeet(r *region, up, down int32, limit float64) float64 {
+	a, b := &k.fronts[up], &k.fronts[down]
+	gap := func(t float64) float64 { return k.place(b, t) - k.place(a, t) }
+	if gap(k.now) <= 0 {
+		return k.now
+	}
+	consumed := math.Min(r.focus(), math.Min(k.exhausts(up, downSide, limit), k.exhausts(down, upSide, limit)))
+	limit = math.Min(limit, math.Min(k.exhausts(up, upSide, limit), k.exhausts(down, downSide, limit)))
+	if consumed > limit && gap(limit) > 0 {
+		return math.Inf(1)
+	}
+	return fallingRoot(gap, k.now, math.Min(consumed, limit))
+}
+
+// pathsMeet: two curved shocks with a uniform state between them, whose other sides are profiles. Each one's
+// speed is monotone in time (it depends on one density that is consumed in one direction), so the speeds at
+// the two ends of a span of time bound the gap within it from below. Spans in which the bound stays positive
+// hold no meeting; the others are halved, earliest first.
+func (k *kernel) pathsMeet(up, down int32, limit float64) float64 {
+	a, b := &k.fronts[up], &k.fronts[down]
+	limit = math.Min(limit, math.Min(k.exhausts(up, upSide, limit), k.exhausts(down, downSide, limit)))
+	p, q := k.gapAt(a, b, k.now), k.gapAt(a, b, limit)
+	if p.gap <= 0 && p.downSpeed < p.upSpeed {
+		return k.now
+	}
+	return k.firstMeeting(a, b, p, q, 64)
+}
+
+// gapState is the distance between two fronts at a time, with their speeds.
+type gapState struct {
+	t, gap, upSpeed, downSpeed float64
+}
+
+func (k *kernel) gapAt(a, b *front, t float64) gapState {
+	return gapState{t, k.place(b, t) - k.place(a, t), k.velocity(a, t), k.velocity(b, t)}
+}
+
+func (k *kernel) firstMeeting(a, b *front, p, q gapState, depth int) float64 {
+	if math.IsNaN(p.gap) {
+		return math.Inf(1) // past the end of one of the paths
+	}
+	h := q.t - p.t
+	slowest := math.Min(p.downSpeed, q.downSpeed) - math.Max(p.upSpeed, q.upSpeed)
+	if p.gap+h*math.Min(0, slowest) > 0 {
+		return math.Inf(1)
+	}
+	fastest := math.Max(p.downSpeed, q.downSpeed) - math.Min(p.upSpeed, q.upSpeed)
+	if fastest < 0 && q.gap <= 0 {
+		return fallingRoot(func(t float64) float64 { return k.place(b, t) - k.place(a, t) }, p.t, q.t)
+	}
+	if fastest <= 0 && q.gap > 0 {
+		return math.Inf(1)
+	}
+	// From the right end the gap can have been smaller by at most h*fastest; both bounds cross at their lowest.
+	if q.gap > 0 && slowest < 0 && fastest > 0 && q.gap*-slowest+p.gap*fastest > h*-slowest*fastest {
+		return math.Inf(1)
+	}
+	if depth == 0 || h <= closeness*k.horizon {
+		if q.gap <= 0 {
+			return q.t
+		}
+		return math.Inf(1)
+	}
+	m := k.gapAt(a, b, p.t+0.5*h)
+	if t := k.firstMeeting(a, b, p, m, depth-1); !math.IsInf(t, 1) {
+		return t
+	}
+	return k.firstMeeting(a, b, m, q, depth-1)
+}

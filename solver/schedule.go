@@ -1,0 +1,186 @@
+package solver
+
+import (
+	"fmt"
+	"math"
+	"slices"
+	"sort"
+)
+
+// law is a rate to first order from a given time on: value + slope*(t - that time).
+type law struct {
+	value, slope float64
+}
+
+// at returns the law that holds from time t on; before is the rate before the first piece.
+func (s Schedule) at(t, before float64) law {
+	i := s.index(t)
+	if i < 0 {
+		return law{value: before}
+	}
+	return law{value: s[i].rate(t), slope: s[i].Slope}
+}
+
+// next returns the first time after t at which another piece begins, +Inf where there is none.
+func (s Schedule) next(t float64) float64 {
+	if i := s.index(t) + 1; i < len(s) {
+		return s[i].Start
+	}
+	return math.Inf(1)
+}
+
+// index is the piece that holds at t, -1 before the first.
+func (s Schedule) index(t float64) int {
+	return sort.Search(len(s), func(i int) bool { return s[i].Start > t }) - 1
+}
+
+func (p *SchedulePiece) rate(t float64) float64 {
+	if p.Slope == 0 {
+		return p.Rate // also where Rate is +Inf
+	}
+	return math.Max(0, p.Rate+p.Slope*(t-p.Start)) // a ramp that ends at 0 may round below it
+}
+
+// total is the integral of a finite schedule from 0 to t, with rate 0 before the first piece.
+func (s Schedule) total(t float64) float64 {
+	sum := 0.0
+	for i := range s {
+		from, to := s.span(i, t)
+		if to > from {
+			sum += (to - from) * 0.5 * (s[i].rate(from) + s[i].rate(to))
+		}
+	}
+	return sum
+}
+
+// moment is the integral from 0 to t of the total, the time integral of the cumulative count.
+func (s Schedule) moment(t float64) float64 {
+	sum := 0.0
+	for i := range s {
+		from, to := s.span(i, t)
+		if to <= from {
+			continue
+		}
+		// The piece adds rate(u) du at u, which is then counted for the remaining t-u.
+		h, r := to-from, s[i].rate(from)
+		sum += (t-to)*h*(r+0.5*s[i].Slope*h) + h*h*(0.5*r+s[i].Slope*h/6)
+	}
+	return sum
+}
+
+// span is the part of [0, t] during which piece i holds.
+func (s Schedule) span(i int, t float64) (from, to float64) {
+	from, to = math.Max(0, s[i].Start), t
+	if i+1 < len(s) {
+		to = math.Min(t, s[i+1].Start)
+	}
+	return from, to
+}
+
+// least is the lesser of two capacities at every time; both are unrestricted before their first piece.
+func least(a, b Schedule) Schedule {
+	if len(a) == 0 || len(b) == 0 {
+		return append(slices.Clone(a), b...)
+	}
+	var out Schedule
+	for t := math.Min(a[0].Start, b[0].Start); !math.IsInf(t, 1); {
+		la, lb := a.at(t, math.Inf(1)), b.at(t, math.Inf(1))
+		next := math.Min(a.next(t), b.next(t))
+		if lb.value < la.value || lb.value == la.value && lb.slope < la.slope {
+			la, lb = lb, la
+		}
+		out = append(out, SchedulePiece{Start: t, Rate: la.value, Slope: la.slope})
+		if cross := t + (lb.value-la.value)/(la.slope-lb.slope); la.slope > lb.slope && cross > t && cross < next {
+			out = append(out, SchedulePiece{Start: cross, Rate: la.value + la.slope*(cross-t), Slope: lb.slope})
+		}
+		t = next
+	}
+	return out
+}
+
+// sloped reports whether any piece is not a step.
+func (s Schedule) sloped() bool {
+	for i := range s {
+		if s[i].Slope != 0 {
+			return true
+		}
+	}
+	return false
+}
+
+// validate checks times and rates up to the horizon. Rates may be +Inf only where unlimited is allowed.
+func (s Schedule) validate(field string, horizon float64, unlimited bool, v *violations) {
+	for i := range s {
+		at := fmt.Sprintf("%s[%d]", field, i)
+		p := &s[i]
+		v.finite(at+".Start", p.Start)
+		v.finite(at+".Slope", p.Slope)
+		if i > 0 && p.Start <= s[i-1].Start {
+			v.add(at+".Start", RuleOrder, p.Start, fmt.Sprintf("later than the piece before it, %g", s[i-1].Start))
+		}
+		if math.IsInf(p.Rate, 1) && unlimited && p.Slope == 0 {
+			continue
+		}
+		v.notNegative(at+".Rate", p.Rate)
+		end := horizon
+		if i+1 < len(s) {
+			end = math.Min(end, s[i+1].Start)
+		}
+		if e := p.Rate + p.Slope*(end-p.Start); end > p.Start && e < -closeness*p.Rate {
+			v.add(at+".Slope", RuleNotNegative, p.Slope, fmt.Sprintf("the rate must stay 0 or more; it reaches %g at %g s", e, end))
+		}
+	}
+}
+
+// schedule turns the plan into the signal's capacity over [0, horizon].
+func (g *Signal) schedule(horizon float64) Schedule {
+	out := Schedule{{Start: math.Inf(-1), Rate: 0}}
+	green := func(start, end float64) {
+		if end <= 0 || start > horizon {
+			return
+		}
+		if last := &out[len(out)-1]; start <= last.Start+closeness*horizon {
+			last.Rate = g.SaturationFlow // greens that touch are one green
+		} else {
+			out = append(out, SchedulePiece{Start: start, Rate: g.SaturationFlow})
+		}
+		out = append(out, SchedulePiece{Start: end})
+	}
+	if g.Plan.Cycle == 0 {
+		for _, w := range g.Plan.Greens {
+			green(w.Start, w.End)
+		}
+		return out
+	}
+	first := math.Floor(-g.Plan.Offset/g.Plan.Cycle) - 1
+	for n := first; g.Plan.Offset+n*g.Plan.Cycle <= horizon; n++ {
+		begin := g.Plan.Offset + n*g.Plan.Cycle
+		for _, w := range g.Plan.Greens {
+			green(begin+w.Start, begin+w.End)
+		}
+	}
+	return out
+}
+
+// validate checks the plan's numbers and order.
+func (p *Plan) validate(field string, v *violations) {
+	v.notNegative(field+".Cycle", p.Cycle)
+	v.finite(field+".Offset", p.Offset)
+	if p.Cycle == 0 && p.Offset != 0 {
+		v.add(field+".Offset", RuleConflict, p.Offset, "0 where there is no cycle")
+	}
+	for i, w := range p.Greens {
+		at := fmt.Sprintf("%s.Greens[%d]", field, i)
+		v.finite(at+".Start", w.Start)
+		v.finite(at+".End", w.End)
+		if !(w.End > w.Start) {
+			v.add(at+".End", RuleOrder, w.End, fmt.Sprintf("later than its start, %g", w.Start))
+		}
+		if i > 0 && w.Start < p.Greens[i-1].End {
+			v.add(at+".Start", RuleOrder, w.Start, fmt.Sprintf("not before the end of the green before it, %g", p.Greens[i-1].End))
+		}
+		if p.Cycle > 0 && (w.Start < 0 || w.End > p.Cycle) {
+			v.add(at, RuleRange, w, fmt.Sprintf("within the cycle, [0, %g]", p.Cycle))
+		}
+	}
+}
