@@ -41,9 +41,19 @@ func (s *Scenario) segmentName(i int) string {
 	return fmt.Sprintf("segment %d", i+1)
 }
 
-// layout lays out nodes and the segments between them, upstream first. roads maps each of these segments to
-// the scenario's segment that it is a part of.
-func (s *Scenario) layout() (nodes []node, segments []segment, roads []int) {
+// layout is the corridor as nodes and the segments between them, upstream first.
+type layout struct {
+	nodes    []node
+	segments []segment
+	roads    []int // the scenario's segment that each segment is a part of
+}
+
+func (s *Scenario) layout() layout {
+	var (
+		nodes    []node
+		segments []segment
+		roads    []int
+	)
 	list := s.controls()
 	nodes = append(nodes, node{name: EntryName, kind: EntryNode, x: s.Origin, demand: slices.Clone(s.Entry.Demand), excess: s.Entry.Excess})
 	x := s.Origin
@@ -76,8 +86,12 @@ func (s *Scenario) layout() (nodes []node, segments []segment, roads []int) {
 	for _, c := range list {
 		last.take(c)
 	}
+	for i := range nodes {
+		nodes[i].capacity.fromStart(closeness * s.Horizon)
+		nodes[i].demand.fromStart(closeness * s.Horizon)
+	}
 	link(nodes, segments)
-	return nodes, segments, roads
+	return layout{nodes, segments, roads}
 }
 
 func (s *Scenario) joinName(i int) string {
@@ -106,13 +120,13 @@ func link(nodes []node, segments []segment) {
 }
 
 // newKernel returns a kernel that holds the traffic at time 0, with all waves that start then.
-func newKernel(s *Scenario) *kernel {
-	k := &kernel{horizon: s.Horizon}
-	k.nodes, k.segments, _ = s.layout()
+func newKernel(s *Scenario, l layout) *kernel {
+	k := &kernel{horizon: s.Horizon, nodes: l.nodes, segments: l.segments}
 	k.reserve()
+	queues := s.standing(l)
 	count := 0.0
 	for i := range k.segments {
-		count = k.start(int32(i), s.initialPieces(k, i), count)
+		count = k.start(int32(i), s.initialPieces(&k.segments[i], i, queues), count)
 	}
 	for i := len(k.nodes) - 1; i >= 0; i-- {
 		k.settle(int32(i))

@@ -126,7 +126,7 @@ func (s *Solution) shockMeets(f *front, l line, until float64) float64 {
 		}
 		return within(from+ahead/closing, until)
 	}
-	return s.paths[f.path].crossing(f.x0, f.t0, l, neither, from, until, 0)
+	return s.paths[f.path].crossing(f.x0, f.t0, l, neither, math.Copysign(1, ahead), from, until, 0)
 }
 
 func within(t, until float64) float64 {

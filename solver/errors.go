@@ -74,7 +74,7 @@ func (e *InvalidError) Error() string {
 
 // LimitError says that a solve was given up because it would have cost more than the caller's [Budget].
 type LimitError struct {
-	// Limit is the exhausted one: "interactions" or "memory".
+	// Limit is the exhausted one: "interactions" or "bytes".
 	Limit string
 	// Max is the limit's value: wave interactions, or bytes.
 	Max int64

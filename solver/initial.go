@@ -7,8 +7,7 @@ import (
 
 // initialPieces is the density at time 0 on segment i of the layout: the background with the standing queues
 // laid over it, in pieces that cover the segment.
-func (s *Scenario) initialPieces(k *kernel, i int) []ProfilePiece {
-	seg := &k.segments[i]
+func (s *Scenario) initialPieces(seg *segment, i int, queues []standingPiece) []ProfilePiece {
 	var background []ProfilePiece
 	if len(s.Initial.Profile) == 0 {
 		free := seg.diagram.freeDensity(s.Initial.BackgroundFlow)
@@ -20,7 +19,7 @@ func (s *Scenario) initialPieces(k *kernel, i int) []ProfilePiece {
 		}
 	}
 	background[0].Start, background[len(background)-1].End = seg.start, seg.end
-	for _, q := range s.standing(k.nodes, k.segments) {
+	for _, q := range queues {
 		if q.segment == i {
 			background = overlay(background, q.piece)
 		}
@@ -74,10 +73,10 @@ type standingPiece struct {
 
 // standing cuts the standing queues into parts by segment. What does not fit is left out: validation has
 // refused it before.
-func (s *Scenario) standing(nodes []node, segments []segment) []standingPiece {
+func (s *Scenario) standing(l layout) []standingPiece {
 	var out []standingPiece
 	for _, q := range s.Initial.Queues {
-		parts, _ := q.parts(nodes, segments)
+		parts, _ := q.parts(l.nodes, l.segments)
 		out = append(out, parts...)
 	}
 	return out
@@ -138,19 +137,41 @@ func nodeNamed(nodes []node, name string) int {
 	return -1
 }
 
-// validate checks the initial traffic against the layout.
+// validateInitialNumbers checks what can be said of the initial traffic without knowing the corridor.
+func (s *Scenario) validateInitialNumbers(v *violations) {
+	for i, p := range s.Initial.Profile {
+		at := fmt.Sprintf("Initial.Profile[%d]", i)
+		v.finite(at+".Start", p.Start)
+		if v.finite(at+".End", p.End) && !(p.End > p.Start) {
+			v.add(at+".End", RuleOrder, p.End, fmt.Sprintf("beyond its start, %g", p.Start))
+		}
+		v.notNegative(at+".StartDensity", p.StartDensity)
+		v.notNegative(at+".EndDensity", p.EndDensity)
+	}
+	v.notNegative("Initial.BackgroundFlow", s.Initial.BackgroundFlow)
+	if len(s.Initial.Profile) > 0 && s.Initial.BackgroundFlow != 0 {
+		v.add("Initial.BackgroundFlow", RuleConflict, s.Initial.BackgroundFlow, "0 where a profile is given")
+	}
+	for i, q := range s.Initial.Queues {
+		at := fmt.Sprintf("Initial.Queues[%d]", i)
+		v.notNegative(at+".Vehicles", q.Vehicles)
+		v.notNegative(at+".Length", q.Length)
+		if (q.Vehicles > 0) == (q.Length > 0) {
+			v.add(at, RuleRequired, q, "exactly one of vehicles and length, more than 0")
+		}
+	}
+}
+
+// validateInitial checks the initial traffic against the layout.
 func (s *Scenario) validateInitial(nodes []node, segments []segment, v *violations) {
 	s.validateProfile(segments, v)
 	if len(s.Initial.Profile) == 0 {
 		s.validateBackground(v)
-	} else if s.Initial.BackgroundFlow != 0 {
-		v.add("Initial.BackgroundFlow", RuleConflict, s.Initial.BackgroundFlow, "0 where a profile is given")
 	}
 	s.validateStanding(nodes, segments, v)
 }
 
 func (s *Scenario) validateBackground(v *violations) {
-	v.notNegative("Initial.BackgroundFlow", s.Initial.BackgroundFlow)
 	for i := range s.Segments {
 		if c := s.Segments[i].Relation.Capacity(); s.Initial.BackgroundFlow > c*(1+closeness) {
 			v.add("Initial.BackgroundFlow", RuleRange, s.Initial.BackgroundFlow, fmt.Sprintf("at most %g, the capacity of %s", c, s.segmentName(i)))
@@ -164,16 +185,10 @@ func (s *Scenario) validateProfile(segments []segment, v *violations) {
 	start, end := segments[0].start, segments[len(segments)-1].end
 	for i, p := range profile {
 		at := fmt.Sprintf("Initial.Profile[%d]", i)
-		v.finite(at+".Start", p.Start)
-		if v.finite(at+".End", p.End) && !(p.End > p.Start) {
-			v.add(at+".End", RuleOrder, p.End, fmt.Sprintf("beyond its start, %g", p.Start))
-		}
 		if math.Abs(p.Start-start) > samePlace {
 			v.add(at+".Start", RuleCover, p.Start, fmt.Sprintf("%g, where the piece before it (or the corridor's entry) leaves off", start))
 		}
 		start = p.End
-		v.notNegative(at+".StartDensity", p.StartDensity)
-		v.notNegative(at+".EndDensity", p.EndDensity)
 		validateDensities(at, p, segments, v)
 	}
 	if n := len(profile); n > 0 && math.Abs(profile[n-1].End-end) > samePlace {
@@ -204,12 +219,6 @@ func validateDensities(at string, p ProfilePiece, segments []segment, v *violati
 func (s *Scenario) validateStanding(nodes []node, segments []segment, v *violations) {
 	for i, q := range s.Initial.Queues {
 		at := fmt.Sprintf("Initial.Queues[%d]", i)
-		v.notNegative(at+".Vehicles", q.Vehicles)
-		v.notNegative(at+".Length", q.Length)
-		if (q.Vehicles > 0) == (q.Length > 0) {
-			v.add(at, RuleRequired, q, "exactly one of vehicles and length, more than 0")
-			continue
-		}
 		n := nodeNamed(nodes, q.Node)
 		if n < 0 {
 			v.add(at+".Node", RuleUnknown, q.Node, "the name of a node of the corridor")
@@ -224,7 +233,11 @@ func (s *Scenario) validateStanding(nodes []node, segments []segment, v *violati
 			continue
 		}
 		if _, rest := q.parts(nodes, segments); rest > samePlace {
-			v.add(at, RuleFits, q, fmt.Sprintf("a queue that fits on the road behind the node; %g of it does not", rest))
+			unit := "vehicles"
+			if q.Length > 0 {
+				unit = "m"
+			}
+			v.add(at, RuleFits, q, fmt.Sprintf("a queue that fits on the road behind the node; %g %s of it do not", rest, unit))
 		}
 	}
 	s.validateOverlap(nodes, segments, v)

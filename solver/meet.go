@@ -125,23 +125,27 @@ func fallingRoot(f func(float64) float64, a, b float64) float64 {
 }
 
 // crossing returns the first time from now on at which the shock meets a straight line that lies to one side of
-// it, up to limit; +Inf where it does not. x0, t0 is the shock's birth; slack is how far before now a meeting
-// may be found and still count as now. along says which side of the shock, if any, the line is a characteristic
+// it, up to limit; +Inf where it does not. x0, t0 is the shock's birth; direction is 1 where the line lies
+// downstream of it and -1 where it lies upstream; slack is how far before now a meeting may be found and still
+// count as now. along says which side of the shock, if any, the line is a characteristic
 // of: there the count is linear in time.
 //
 // On the line the difference of the two sides' counts is a rational function of time, zero where the shock
 // is on the line. It is also zero where the other root of the path's quadratic is: there the difference falls
 // in place, that is, the upstream side, continued, is the denser one.
-func (p *path) crossing(x0, t0 float64, l line, along side, now, limit, slack float64) float64 {
+func (p *path) crossing(x0, t0 float64, l line, along side, direction, now, limit, slack float64) float64 {
 	e := l.at(t0) - x0
 	if l.t0 == t0 {
 		e = l.x0 - x0
+	}
+	if now == t0 && p.passed(e, l.speed, direction) {
+		return now
 	}
 	c := p.differenceAlong(e, l.speed, along)
 	for c[0] == 0 && (c[1] != 0 || c[2] != 0 || c[3] != 0) {
 		c = cubic{c[1], c[2], c[3], 0} // they start at one point: that is no meeting
 	}
-	roots, n := c.roots(now-t0-slack, math.Min(p.until, limit-t0))
+	roots, n := c.roots(math.Max(0, now-t0-slack), math.Min(p.until, limit-t0))
 	for _, T := range roots[:n] {
 		X := e + l.speed*T
 		if p.down.density(X, T)-p.up.density(X, T) > closeness*(p.down.k+p.up.k) {
@@ -149,6 +153,13 @@ func (p *path) crossing(x0, t0 float64, l line, along side, now, limit, slack fl
 		}
 	}
 	return math.Inf(1)
+}
+
+// passed reports whether the shock is born beyond a line at distance e and still leaving it behind: a rounding
+// has hidden that they meet right here.
+func (p *path) passed(e, speed, direction float64) bool {
+	jump := p.up.k - p.down.k
+	return e*direction < 0 && jump != 0 && (speed-p.jumpFlow/jump)*direction < 0
 }
 
 // differenceAlong is the difference of the counts of the two sides along a line, times its denominators.

@@ -15,9 +15,9 @@ func (k *kernel) meeting(g int32) float64 {
 	case upPath == nil && downPath == nil:
 		return k.linesMeet(r, b, upLine, downLine)
 	case downPath == nil:
-		return upPath.crossing(upLine.x0, upLine.t0, downLine, alongIf(r, b.down, downSide), k.now, k.limit(b, r), k.slack())
+		return upPath.crossing(upLine.x0, upLine.t0, downLine, alongIf(r, b.down, downSide), 1, k.now, k.limit(b, r), k.slack())
 	case upPath == nil:
-		return downPath.crossing(downLine.x0, downLine.t0, upLine, alongIf(r, b.up, upSide), k.now, k.limit(b, r), k.slack())
+		return downPath.crossing(downLine.x0, downLine.t0, upLine, alongIf(r, b.up, upSide), -1, k.now, k.limit(b, r), k.slack())
 	case r.uniform():
 		return k.pathsMeet(b.up, b.down, k.limit(b, r))
 	default:
@@ -72,7 +72,11 @@ func (k *kernel) exhausts(id int32, s side, limit float64) float64 {
 	}
 	dk := last - l.k
 	edge := line{x0: f.x0 + dk*l.s, t0: f.t0, speed: l.c + l.d*dk}
-	return p.crossing(f.x0, f.t0, edge, s, f.t0, limit, 0)
+	direction := -1.0
+	if s == downSide {
+		direction = 1
+	}
+	return p.crossing(f.x0, f.t0, edge, s, direction, f.t0, limit, 0)
 }
 
 // linesMeet: two characteristics of one profile meet at its focus; other straight bounds where they cross.

@@ -100,7 +100,7 @@ func (k *kernel) takeIn(n *node) float64 {
 		}
 	}
 	up, down := n.up, n.down
-	for n.up >= 0 && k.bounds[n.up].due <= until {
+	for n.up >= 0 && k.bounds[n.up].due <= until && k.bounds[n.up].up >= 0 {
 		b := k.bounds[n.up]
 		now = math.Max(now, b.due)
 		gone := n.up
@@ -108,7 +108,7 @@ func (k *kernel) takeIn(n *node) float64 {
 		k.boundDown(n.up, b.down)
 		k.bury(gone, b.up)
 	}
-	for n.down >= 0 && k.bounds[n.down].due <= until {
+	for n.down >= 0 && k.bounds[n.down].due <= until && k.bounds[n.down].down >= 0 {
 		b := k.bounds[n.down]
 		now = math.Max(now, b.due)
 		gone := n.down

@@ -185,7 +185,7 @@ func (s *Solution) reaches(p part, x float64) float64 {
 		}
 		return within(f.t0+(x-f.x0)/f.speed, p.to)
 	}
-	return s.paths[f.path].crossing(f.x0, f.t0, at, neither, p.from, p.to, 0)
+	return s.paths[f.path].crossing(f.x0, f.t0, at, neither, -1, p.from, p.to, 0)
 }
 
 // part is an end of a strip over a span of time in which it is one front or node.
@@ -230,19 +230,40 @@ func (q Queue) Strips(tolerance float64) []StripPath {
 // stay within tolerance [m] of the exact path. Where another strip becomes the outermost one it jumps: two
 // points at one time.
 func (q Queue) TailPoints(tolerance float64) []Point {
-	var out []Point
-	until := math.Inf(-1)
+	var outer []part
+	times := q.eventTimes()
+	for i := 1; i < len(times); i++ {
+		bound, ok := q.outermost(0.5 * (times[i-1] + times[i]))
+		if !ok {
+			continue
+		}
+		if n := len(outer); n > 0 && outer[n-1].bound == bound {
+			outer[n-1].to = times[i]
+			continue
+		}
+		outer = append(outer, part{bound, times[i-1], times[i]})
+	}
+	return q.sol.points(outer, tolerance)
+}
+
+// outermost is the front or node that is the most upstream tail at time t. Tails never cross, so it stays that
+// between two events.
+func (q Queue) outermost(t float64) (bound int32, ok bool) {
+	lowest := math.Inf(1)
 	for _, p := range q.strips {
+		if !p.stands(t) {
+			continue
+		}
 		for _, one := range q.sol.parts(p, p.tails) {
-			// Strips move upstream no faster than those born before them, so these stay the outermost while they live.
-			one.from = math.Max(one.from, until)
-			if one.to > one.from {
-				out = append(out, q.sol.points([]part{one}, tolerance)...)
+			if one.from > t || one.to < t {
+				continue
+			}
+			if place := q.sol.boundPlace(one.bound, t); place < lowest {
+				lowest, bound, ok = place, one.bound, true
 			}
 		}
-		until = math.Max(until, math.Min(p.ended, q.sol.horizon))
 	}
-	return out
+	return bound, ok
 }
 
 func (s *Solution) points(parts []part, tolerance float64) []Point {

@@ -77,6 +77,16 @@ func (s Schedule) span(i int, t float64) (from, to float64) {
 	return from, to
 }
 
+// fromStart moves to 0 what begins within slack after it: the first state and such a change are one.
+func (s Schedule) fromStart(slack float64) Schedule {
+	for i := range s {
+		if s[i].Start > 0 && s[i].Start <= slack {
+			s[i].Start = 0
+		}
+	}
+	return s
+}
+
 // least is the lesser of two capacities at every time; both are unrestricted before their first piece.
 func least(a, b Schedule) Schedule {
 	if len(a) == 0 || len(b) == 0 {

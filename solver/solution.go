@@ -29,14 +29,13 @@ type Solution struct {
 	strips func() *stripSet
 }
 
-func newSolution(s *Scenario, k *kernel) *Solution {
+func newSolution(s *Scenario, l layout, k *kernel) *Solution {
 	sol := &Solution{
 		horizon: s.Horizon, excess: s.Entry.Excess, nodes: k.nodes, segments: k.segments,
 		regions: k.regions, bounds: k.bounds, fronts: k.fronts, paths: k.paths, steps: k.steps,
-		interactions: k.interactions, bytes: k.bytes(), kernel: k,
+		interactions: k.interactions, bytes: k.bytes(), kernel: k, roads: l.roads,
 	}
 	k.agenda, k.waves = nil, nil
-	_, _, sol.roads = s.layout()
 	for i := range s.Segments {
 		sol.roadNames = append(sol.roadNames, s.segmentName(i))
 	}

@@ -31,7 +31,8 @@ type Stats struct {
 // used up; *[ClosedFormError] when the exact solution leaves the family held in closed form; ctx.Err() when
 // the context ends first.
 func Solve(ctx context.Context, s Scenario, b Budget) (*Solution, error) {
-	if err := s.Validate(); err != nil {
+	l, err := s.prepare()
+	if err != nil {
 		return nil, err
 	}
 	if b.Interactions <= 0 {
@@ -43,12 +44,12 @@ func Solve(ctx context.Context, s Scenario, b Budget) (*Solution, error) {
 	if err := ctx.Err(); err != nil {
 		return nil, err
 	}
-	k := newKernel(&s)
+	k := newKernel(&s, l)
 	if k.refused != nil {
 		return nil, k.refused
 	}
 	if err := k.run(ctx, b); err != nil {
 		return nil, err
 	}
-	return newSolution(&s, k), nil
+	return newSolution(&s, l, k), nil
 }

@@ -158,7 +158,7 @@ func (s *Solution) crossingTime(l *leg, bound int32, from, until float64) float6
 		if l.form.k == 0 {
 			along = upSide
 		}
-		return p.crossing(target.x0, target.t0, own, along, from, until, 0)
+		return p.crossing(target.x0, target.t0, own, along, -1, from, until, 0)
 	}
 	f := &s.fronts[bound]
 	ahead := func(t float64) float64 { return -l.form.count(s.kernel.place(f, t)-l.x, t-l.t) }

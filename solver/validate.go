@@ -10,6 +10,7 @@ import (
 const (
 	minLength      = 0.01    // of a segment [m]
 	maxPlace       = 1e7     // size of a place [m]
+	minHorizon     = 1e-3    // [s]
 	maxHorizon     = 1e7     // [s], about 115 days
 	minSpeed       = 0.01    // free-flow speed [m/s]
 	maxSpeed       = 1000    // any wave speed [m/s]
@@ -23,35 +24,43 @@ const (
 
 // Validate reports all that is wrong with the scenario as one *[InvalidError], or nil.
 func (s Scenario) Validate() error {
+	_, err := s.prepare()
+	return err
+}
+
+// prepare validates the scenario and lays it out.
+func (s *Scenario) prepare() (layout, error) {
 	var v violations
 	v.within("Origin", s.Origin, -maxPlace, maxPlace)
 	v.positive("Horizon", s.Horizon)
-	if s.Horizon > maxHorizon {
-		v.add("Horizon", RuleRange, s.Horizon, fmt.Sprintf("at most %g s", float64(maxHorizon)))
+	if s.Horizon > 0 {
+		v.within("Horizon", s.Horizon, minHorizon, maxHorizon)
 	}
 	s.validateSegments(&v)
-	if len(v.list) > 0 {
-		s.validateControls(math.Inf(1), &v)
-		return v.err()
-	}
-	end := s.Origin
-	for i := range s.Segments {
-		end += s.Segments[i].Length
+	end := math.Inf(1)
+	if len(v.list) == 0 {
+		end = s.Origin
+		for i := range s.Segments {
+			end += s.Segments[i].Length
+		}
 	}
 	s.validateControls(end, &v)
 	s.validateEnds(&v)
+	s.validateInitialNumbers(&v)
 	if len(v.list) > 0 {
-		return v.err()
+		return layout{}, v.err()
 	}
-	nodes, segments, _ := s.layout()
+	l := s.layout()
+	nodes, segments := l.nodes, l.segments
 	for i := range nodes {
 		if first := nodeNamed(nodes, nodes[i].name); first != i {
 			v.add("Segments", RuleUnique, nodes[i].name, "names of segments, bottlenecks and signals that give every node a name of its own")
 		}
 	}
+	s.validateSpacing(l, &v)
 	s.validateClosedForm(nodes, segments, &v)
 	s.validateInitial(nodes, segments, &v)
-	return v.err()
+	return l, v.err()
 }
 
 func (s *Scenario) validateSegments(v *violations) {
@@ -107,7 +116,7 @@ func (s *Scenario) validateControls(end float64, v *violations) {
 		v.named(at+".Name", g.Name, names)
 		v.within(at+".Place", g.Place, s.Origin-samePlace, math.Min(end, maxPlace)+samePlace)
 		if !(g.SaturationFlow > 0) {
-			v.add(at+".SaturationFlow", RulePositive, g.SaturationFlow, "more than 0, or +Inf for no limit of its own")
+			v.add(at+".SaturationFlow", RulePositive, g.SaturationFlow, "more than 0")
 		}
 		g.Plan.validate(at+".Plan", v)
 		s.validateSwitches(at, g, v)
@@ -121,6 +130,9 @@ func (s *Scenario) validateSwitches(at string, g *Signal, v *violations) {
 	if g.Plan.Cycle == 0 {
 		return
 	}
+	if g.Plan.Cycle > maxHorizon {
+		v.add(at+".Plan.Cycle", RuleRange, g.Plan.Cycle, fmt.Sprintf("at most %g s", float64(maxHorizon)))
+	}
 	if n := s.Horizon / g.Plan.Cycle * float64(2*len(g.Plan.Greens)); n > maxSwitches {
 		v.add(at+".Plan.Cycle", RuleRange, g.Plan.Cycle, fmt.Sprintf("long enough that the signal switches at most %d times within the horizon", maxSwitches))
 	}
@@ -132,11 +144,41 @@ func (s *Scenario) validateSwitches(at string, g *Signal, v *violations) {
 // validatePlaces: at most one control at a place.
 func (s *Scenario) validatePlaces(v *violations) {
 	list := s.controls()
-	for i, c := range list {
-		if i > 0 && c.place-list[i-1].place <= samePlace {
-			v.add("Bottlenecks, Signals", RuleUnique, c.place, fmt.Sprintf("one bottleneck or signal at a place; %q and %q stand at the same", list[i-1].name, c.name))
+	for i := 1; i < len(list); i++ {
+		if a, b := &list[i-1], &list[i]; b.place-a.place <= samePlace {
+			v.add(s.controlField(b.name)+".Place", RuleUnique, b.place, fmt.Sprintf("one bottleneck or signal at a place; %q stands there too", a.name))
 		}
 	}
+}
+
+// validateSpacing: nodes that are not at one place are some way apart.
+func (s *Scenario) validateSpacing(l layout, v *violations) {
+	for i := range l.segments {
+		g := &l.segments[i]
+		if g.end-g.start >= minLength {
+			continue
+		}
+		n := &l.nodes[i]
+		if s.controlField(l.nodes[i+1].name) != "" {
+			n = &l.nodes[i+1]
+		}
+		v.add(s.controlField(n.name)+".Place", RuleRange, n.x, fmt.Sprintf("at a node of the corridor, or at least %g m from it", minLength))
+	}
+}
+
+// controlField is the field path of the bottleneck or signal of that name, empty for other nodes.
+func (s *Scenario) controlField(name string) string {
+	for i := range s.Bottlenecks {
+		if s.Bottlenecks[i].Name == name {
+			return fmt.Sprintf("Bottlenecks[%d]", i)
+		}
+	}
+	for i := range s.Signals {
+		if s.Signals[i].Name == name {
+			return fmt.Sprintf("Signals[%d]", i)
+		}
+	}
+	return ""
 }
 
 func (s *Scenario) validateEnds(v *violations) {
@@ -164,10 +206,8 @@ func (s *Scenario) validateClosedForm(nodes []node, segments []segment, v *viola
 
 // scheduleField is the field path of the schedule that governs the node.
 func (s *Scenario) scheduleField(n *node) string {
-	for i := range s.Bottlenecks {
-		if n.capacity.sloped() && s.Bottlenecks[i].Name == n.name {
-			return fmt.Sprintf("Bottlenecks[%d].Capacity", i)
-		}
+	if field := s.controlField(n.name); field != "" && n.capacity.sloped() {
+		return field + ".Capacity"
 	}
 	if n.demand.sloped() {
 		return "Entry.Demand"

@@ -1,0 +1,59 @@
+package service
+
+import (
+	"regexp"
+	"strconv"
+	"strings"
+)
+
+// relabelUnits serves texts whose numbers are in the contract's units already.
+var relabelUnits = strings.NewReplacer("veh/m", "veh/km", "veh/s", "veh/h", "m/s", "km/h")
+
+// quantity finds the numbers in a text, with the unit behind them if there is one. It leaves alone what is part
+// of a name ("segment-2", "A1") or counts something else.
+var quantity = regexp.MustCompile(`(^|[ (\[])([-+]?\d+(?:\.\d+)?(?:e[-+]?\d+)?)( veh/m| veh/s| m/s| m| s)?([ ,;:)\]]|$)`)
+
+// conversions turn the solver's units, with a space before them, into the contract's.
+var conversions = map[string]struct {
+	convert func(float64) float64
+	unit    string
+}{
+	" veh/m": {densityFromSI, " veh/km"},
+	" veh/s": {flowFromSI, " veh/h"},
+	" m/s":   {speedFromSI, " km/h"},
+}
+
+// inContractUnits rewrites the quantities in a text of the solver, such as "at most 0.15 veh/m". Numbers without a
+// unit are taken to be in that of the field that the text is about.
+func inContractUnits(text, field string) string {
+	bare := unitOf(field)
+	return quantity.ReplaceAllStringFunc(text, func(found string) string {
+		parts := quantity.FindStringSubmatch(found)
+		unit := parts[3]
+		if unit == "" {
+			unit = bare
+		}
+		c, converts := conversions[unit]
+		x, err := strconv.ParseFloat(parts[2], 64)
+		if !converts || err != nil || x == 0 {
+			return found
+		}
+		return parts[1] + printShort(c.convert(x)) + c.unit + parts[4]
+	})
+}
+
+// unitOf is the solver's unit of a field of the contract; "" where it is the same as the contract's.
+func unitOf(field string) string {
+	switch {
+	case strings.HasSuffix(field, "_veh_per_km"):
+		return " veh/m"
+	case strings.HasSuffix(field, "_veh_per_h"):
+		return " veh/s"
+	case strings.HasSuffix(field, "_km_per_h"):
+		return " m/s"
+	}
+	return ""
+}
+
+// printShort prints a converted number without the digits that conversion made up.
+func printShort(x float64) string { return strconv.FormatFloat(x, 'g', 9, 64) }
