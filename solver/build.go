@@ -3,7 +3,6 @@ package solver
 import (
 	"fmt"
 	"math"
-	"slices"
 	"sort"
 )
 
@@ -23,7 +22,7 @@ type control struct {
 func (s *Scenario) controls() []control {
 	list := make([]control, 0, len(s.Bottlenecks)+len(s.Signals))
 	for _, b := range s.Bottlenecks {
-		list = append(list, control{b.Name, BottleneckNode, b.Place, slices.Clone(b.Capacity)})
+		list = append(list, control{b.Name, BottleneckNode, b.Place, b.Capacity})
 	}
 	for i := range s.Signals {
 		g := &s.Signals[i]
@@ -55,7 +54,7 @@ func (s *Scenario) layout() layout {
 		roads    []int
 	)
 	list := s.controls()
-	nodes = append(nodes, node{name: EntryName, kind: EntryNode, x: s.Origin, demand: slices.Clone(s.Entry.Demand), excess: s.Entry.Excess})
+	nodes = append(nodes, node{name: EntryName, kind: EntryNode, x: s.Origin, excess: s.Entry.Excess})
 	x := s.Origin
 	for i := range s.Segments {
 		end := x + s.Segments[i].Length
@@ -80,17 +79,15 @@ func (s *Scenario) layout() layout {
 	}
 	last := &nodes[len(nodes)-1]
 	last.name, last.kind = ExitName, ExitNode
-	if len(s.Exit.Capacity) > 0 {
-		last.capacity = slices.Clone(s.Exit.Capacity)
-	}
+	last.restriction = s.Exit.Capacity
 	for _, c := range list {
 		last.take(c)
 	}
+	link(nodes, segments, s.Horizon)
 	for i := range nodes {
-		nodes[i].capacity.fromStart(closeness * s.Horizon)
-		nodes[i].demand.fromStart(closeness * s.Horizon)
+		nodes[i].capacity = newTimetable(nodes[i].restriction, math.Inf(1), closeness*s.Horizon)
 	}
-	link(nodes, segments)
+	nodes[0].demand = newTimetable(s.Entry.Demand, 0, closeness*s.Horizon)
 	return layout{nodes, segments, roads}
 }
 
@@ -104,11 +101,11 @@ func (s *Scenario) joinName(i int) string {
 // take puts a bottleneck or signal at the node.
 func (n *node) take(c control) {
 	n.name, n.kind = c.name, c.kind
-	n.capacity = least(n.capacity, c.capacity)
+	n.restriction = least(n.restriction, c.capacity)
 }
 
-// link numbers the segments at each node.
-func link(nodes []node, segments []segment) {
+// link tells each node the segments at it, and what counts as equal there.
+func link(nodes []node, segments []segment, horizon float64) {
 	for i := range nodes {
 		n := &nodes[i]
 		n.upSeg, n.downSeg, n.up, n.down = int32(i-1), int32(i), -1, -1
@@ -116,12 +113,16 @@ func link(nodes []node, segments []segment) {
 			n.downSeg = -1
 		}
 		n.alike = i > 0 && i < len(segments) && segments[i-1].diagram.same(segments[i].diagram)
+		for _, seg := range segments[max(0, i-1):min(i+1, len(segments))] {
+			n.flowTolerance = math.Max(n.flowTolerance, seg.flowTolerance)
+		}
+		n.slopeTolerance = n.flowTolerance / horizon
 	}
 }
 
 // newKernel returns a kernel that holds the traffic at time 0, with all waves that start then.
 func newKernel(s *Scenario, l layout) *kernel {
-	k := &kernel{horizon: s.Horizon, nodes: l.nodes, segments: l.segments}
+	k := &kernel{plane: plane{horizon: s.Horizon, nodes: l.nodes, segments: l.segments}}
 	k.reserve()
 	queues := s.standing(l)
 	count := 0.0
@@ -135,20 +136,25 @@ func newKernel(s *Scenario, l layout) *kernel {
 	return k
 }
 
-// reserve room for a moderate scenario, so that small ones do not grow their lists step by step.
+// reserve makes room for what a scenario of this size usually takes, so that the lists need not be copied as
+// they grow: some five fronts for each switch of a node.
 func (k *kernel) reserve() {
 	n := 64
 	for i := range k.nodes {
-		n += 8 + 8*len(k.nodes[i].capacity)
+		n += 8 + 5*len(k.nodes[i].restriction)
+		k.nodes[i].history = make([]passage, 0, 8+3*len(k.nodes[i].restriction))
 	}
-	n = min(n, 1<<14)
+	n = min(n, maxReserve)
 	k.regions = make([]region, 0, n)
 	k.bounds = make([]bound, 0, n)
 	k.fronts = make([]front, 0, n)
+	k.limits = make([]bounding, 0, n+n/2)
 	k.steps = make([]step, 0, n)
-	k.limits = make([]bounding, 0, n)
 	k.agenda = make(agenda, 0, 64)
 }
+
+// maxReserve bounds what is reserved before anything is known, to some 30 MB.
+const maxReserve = 1 << 17
 
 // start puts the initial regions of a segment, upstream first, and the waves between them. It returns the
 // count at the segment's end: counts fall downstream by the vehicles in between.

@@ -112,12 +112,12 @@ func (s *Solution) shockMeets(f *front, l line, until float64) float64 {
 	if from >= until {
 		return math.Inf(1)
 	}
-	ahead := l.at(from) - s.kernel.place(f, from)
+	ahead := l.at(from) - s.place(f, from)
 	if math.Abs(ahead) <= closeness*(1+math.Abs(l.x0)) {
 		if from > l.t0 {
 			return from // the wave is at the place where the shock is born
 		}
-		ahead = l.speed - s.kernel.velocity(f, from)
+		ahead = l.speed - s.velocity(f, from)
 	}
 	if f.path < 0 {
 		closing := f.speed - l.speed

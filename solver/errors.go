@@ -2,6 +2,7 @@ package solver
 
 import (
 	"fmt"
+	"math"
 	"strings"
 )
 
@@ -9,31 +10,31 @@ import (
 type Rule string
 
 const (
-	// RuleFinite: the number must be finite (not NaN, not infinite).
+	// RuleFinite means: the number must be finite (not NaN, not infinite).
 	RuleFinite Rule = "FINITE"
-	// RulePositive: the number must be greater than zero.
+	// RulePositive means: the number must be greater than zero.
 	RulePositive Rule = "POSITIVE"
-	// RuleNotNegative: the number must be zero or greater.
+	// RuleNotNegative means: the number must be zero or greater.
 	RuleNotNegative Rule = "NOT_NEGATIVE"
-	// RuleRange: the number must lie in the stated range.
+	// RuleRange means: the number must lie in the stated range.
 	RuleRange Rule = "RANGE"
-	// RuleOrder: the entries must be in rising order.
+	// RuleOrder means: the entries must be in rising order.
 	RuleOrder Rule = "ORDER"
-	// RuleRequired: something that must be given is missing.
+	// RuleRequired means: something that must be given is missing.
 	RuleRequired Rule = "REQUIRED"
-	// RuleConflict: two inputs contradict each other.
+	// RuleConflict means: two inputs contradict each other.
 	RuleConflict Rule = "CONFLICT"
-	// RuleConcave: a flow-density relation must be concave.
+	// RuleConcave means: a flow-density relation must be concave.
 	RuleConcave Rule = "CONCAVE"
-	// RuleCover: the pieces must cover the corridor without gap or overlap.
+	// RuleCover means: the pieces must cover the corridor without gap or overlap.
 	RuleCover Rule = "COVER"
-	// RuleUnique: names and places must not be used twice.
+	// RuleUnique means: names and places must not be used twice.
 	RuleUnique Rule = "UNIQUE"
-	// RuleUnknown: the name refers to nothing in the scenario.
+	// RuleUnknown means: the name refers to nothing in the scenario.
 	RuleUnknown Rule = "UNKNOWN"
-	// RuleFits: a standing queue must fit into the road behind it.
+	// RuleFits means: a standing queue must fit into the road behind it.
 	RuleFits Rule = "FITS"
-	// RuleClosedForm: the input asks for something whose exact solution leaves the family that this
+	// RuleClosedForm means: the input asks for something whose exact solution leaves the family that this
 	// solver holds in closed form; it is refused, never approximated.
 	RuleClosedForm Rule = "CLOSED_FORM"
 )
@@ -122,4 +123,30 @@ func (v *violations) err() error {
 		return nil
 	}
 	return &InvalidError{Violations: v.list}
+}
+
+func (v *violations) finite(field string, x float64) bool {
+	if math.IsNaN(x) || math.IsInf(x, 0) {
+		v.add(field, RuleFinite, x, "a finite number")
+		return false
+	}
+	return true
+}
+
+func (v *violations) positive(field string, x float64) {
+	if v.finite(field, x) && x <= 0 {
+		v.add(field, RulePositive, x, "more than 0")
+	}
+}
+
+func (v *violations) notNegative(field string, x float64) {
+	if v.finite(field, x) && x < 0 {
+		v.add(field, RuleNotNegative, x, "0 or more")
+	}
+}
+
+func (v *violations) within(field string, x, lo, hi float64) {
+	if v.finite(field, x) && (x < lo || x > hi) {
+		v.add(field, RuleRange, x, fmt.Sprintf("between %g and %g", lo, hi))
+	}
 }

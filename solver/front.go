@@ -6,12 +6,12 @@ import "math"
 type FrontKind int8
 
 const (
-	// Shock: the density rises across it downstream, and waves of both sides run into it.
+	// Shock means: the density rises across it downstream, and waves of both sides run into it.
 	Shock FrontKind = iota
-	// Contact: the density jumps, and the front moves with the wave speed of a straight piece of the
+	// Contact means: the density jumps, and the front moves with the wave speed of a straight piece of the
 	// relation that holds both densities.
 	Contact
-	// Edge: the density is continuous and only its gradient jumps: the edge of a fan or of a profile.
+	// Edge means: the density is continuous and only its gradient jumps: the edge of a fan or of a profile.
 	Edge
 )
 
@@ -22,11 +22,11 @@ func (k FrontKind) String() string { return [...]string{"shock", "contact", "edg
 type FrontEnd int8
 
 const (
-	// AtHorizon: it still exists at the end of the solved time.
+	// AtHorizon means: it still exists at the end of the solved time.
 	AtHorizon FrontEnd = iota
-	// Merged: it met another front.
+	// Merged means: it met another front.
 	Merged
-	// AtNode: it reached a node.
+	// AtNode means: it reached a node.
 	AtNode
 )
 
@@ -145,24 +145,24 @@ type line struct {
 
 func (l line) at(t float64) float64 { return l.x0 + l.speed*(t-l.t0) }
 
-func (k *kernel) line(f *front) line { return line{f.x0, f.t0, f.speed} }
+func (p *plane) line(f *front) line { return line{f.x0, f.t0, f.speed} }
 
 // place of a front at time t.
-func (k *kernel) place(f *front, t float64) float64 {
+func (p *plane) place(f *front, t float64) float64 {
 	if f.path < 0 {
 		return f.x0 + f.speed*(t-f.t0)
 	}
-	return f.x0 + k.paths[f.path].offset(t-f.t0)
+	return f.x0 + p.paths[f.path].offset(t-f.t0)
 }
 
 // velocity of a front at time t, from the densities on its two sides.
-func (k *kernel) velocity(f *front, t float64) float64 {
+func (p *plane) velocity(f *front, t float64) float64 {
 	if f.path < 0 {
 		return f.speed
 	}
-	p := &k.paths[f.path]
+	shock := &p.paths[f.path]
 	T := t - f.t0
-	X := p.offset(T)
-	d := k.segments[f.seg].diagram
-	return d.secant(int(p.upPiece), p.up.density(X, T), int(p.downPiece), p.down.density(X, T))
+	X := shock.offset(T)
+	d := p.segments[f.seg].diagram
+	return d.secant(int(shock.upPiece), shock.up.density(X, T), int(shock.downPiece), shock.down.density(X, T))
 }

@@ -37,7 +37,7 @@ func (s *Solution) front(id int32) Front {
 	end := math.Min(f.end, s.horizon)
 	return Front{
 		ID: int(id), Kind: f.kind, Segment: s.roads[f.seg],
-		Birth: Point{f.x0, f.t0}, End: Point{s.kernel.place(f, end), end},
+		Birth: Point{f.x0, f.t0}, End: Point{s.place(f, end), end},
 		EndsBy: f.ends, Into: int(f.into), Straight: f.path < 0, sol: s,
 	}
 }
@@ -46,11 +46,11 @@ func (f Front) inner() *front { return &f.sol.fronts[f.ID] }
 
 // Position returns the place of the front at time t, a time of its life [m]; other times are taken as the
 // nearest such time.
-func (f Front) Position(t float64) float64 { return f.sol.kernel.place(f.inner(), f.within(t)) }
+func (f Front) Position(t float64) float64 { return f.sol.place(f.inner(), f.within(t)) }
 
 // Speed returns the speed of the front at time t, a time of its life [m/s]: the chord slope between the states
 // on its two sides.
-func (f Front) Speed(t float64) float64 { return f.sol.kernel.velocity(f.inner(), f.within(t)) }
+func (f Front) Speed(t float64) float64 { return f.sol.velocity(f.inner(), f.within(t)) }
 
 func (f Front) within(t float64) float64 {
 	return math.Max(f.Birth.Time, math.Min(f.End.Time, t))
@@ -74,7 +74,7 @@ func (f Front) Sides(t float64) (up, down State) {
 func (f Front) straightSide(g int32, t float64, upstream bool) State {
 	s := f.sol
 	r := &s.regions[g]
-	x := s.kernel.place(f.inner(), t)
+	x := s.place(f.inner(), t)
 	if r.d != 0 {
 		return s.stateOf(r.seg, int(r.piece), r.k+(f.inner().speed-r.c)/r.d)
 	}

@@ -17,16 +17,16 @@ type segmentIndex struct {
 // minSpan is the least number of births that end a span.
 const minSpan = 8
 
-func newIndex(k *kernel) []segmentIndex {
-	index := make([]segmentIndex, len(k.segments))
-	open := make([]openSpan, len(k.segments))
+func newIndex(p *plane) []segmentIndex {
+	index := make([]segmentIndex, len(p.segments))
+	open := make([]openSpan, len(p.segments))
 	for i := range open {
 		index[i].starts = []float64{0}
 		index[i].first = []int32{0}
 	}
-	for id := range k.fronts {
-		f := &k.fronts[id]
-		open[f.seg].add(k, &index[f.seg], int32(id))
+	for id := range p.fronts {
+		f := &p.fronts[id]
+		open[f.seg].add(p, &index[f.seg], int32(id))
 	}
 	for i := range open {
 		open[i].close(&index[i])
@@ -40,14 +40,14 @@ type openSpan struct {
 	carried int // members that stood at its beginning
 }
 
-func (o *openSpan) add(k *kernel, index *segmentIndex, id int32) {
-	born := k.fronts[id].t0
+func (o *openSpan) add(p *plane, index *segmentIndex, id int32) {
+	born := p.fronts[id].t0
 	if len(o.members)-o.carried >= max(minSpan, o.carried) && born > index.starts[len(index.starts)-1] {
 		o.close(index)
 		index.starts = append(index.starts, born)
 		kept := o.members[:0]
 		for _, m := range o.members {
-			if k.fronts[m].end >= born {
+			if p.fronts[m].end >= born {
 				kept = append(kept, m)
 			}
 		}
@@ -87,7 +87,7 @@ func (s *Solution) locateWithin(seg int32, x, t float64) (up, down int32, onFron
 		if !f.exists(t) {
 			continue
 		}
-		p := s.kernel.place(f, t)
+		p := s.place(f, t)
 		if math.Abs(p-x) <= on {
 			lowest, highest = s.outermost(lowest, highest, id, t)
 			continue
@@ -136,7 +136,7 @@ func (s *Solution) ahead(a, b int32, t float64) bool {
 	if fa.t0 == t && fb.t0 == t {
 		return a > b // fronts of one meeting are numbered from upstream
 	}
-	return s.kernel.velocity(fa, t) < s.kernel.velocity(fb, t)
+	return s.velocity(fa, t) < s.velocity(fb, t)
 }
 
 // frontsAt lists the fronts on a segment at time t, upstream first.
@@ -149,7 +149,7 @@ func (s *Solution) frontsAt(seg int32, t float64) []*front {
 	}
 	places := make(map[int32]float64, len(ids))
 	for _, id := range ids {
-		places[id] = s.kernel.place(&s.fronts[id], t)
+		places[id] = s.place(&s.fronts[id], t)
 	}
 	on := closeness * (s.segments[seg].end - s.segments[seg].start)
 	sort.SliceStable(ids, func(i, j int) bool {

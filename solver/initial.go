@@ -1,9 +1,6 @@
 package solver
 
-import (
-	"fmt"
-	"math"
-)
+import "math"
 
 // initialPieces is the density at time 0 on segment i of the layout: the background with the standing queues
 // laid over it, in pieces that cover the segment.
@@ -119,7 +116,7 @@ func standingDensity(n *node, segments []segment, s *segment) float64 {
 
 // heldFlow is what the node lets pass at time 0 while a queue stands at it.
 func (n *node) heldFlow(segments []segment) float64 {
-	flow := n.allowed(0).value
+	flow := n.restriction.at(0, math.Inf(1)).value
 	for _, seg := range [2]int32{n.upSeg, n.downSeg} {
 		if seg >= 0 {
 			flow = math.Min(flow, segments[seg].diagram.capacity)
@@ -135,129 +132,4 @@ func nodeNamed(nodes []node, name string) int {
 		}
 	}
 	return -1
-}
-
-// validateInitialNumbers checks what can be said of the initial traffic without knowing the corridor.
-func (s *Scenario) validateInitialNumbers(v *violations) {
-	for i, p := range s.Initial.Profile {
-		at := fmt.Sprintf("Initial.Profile[%d]", i)
-		v.finite(at+".Start", p.Start)
-		if v.finite(at+".End", p.End) && !(p.End > p.Start) {
-			v.add(at+".End", RuleOrder, p.End, fmt.Sprintf("beyond its start, %g", p.Start))
-		}
-		v.notNegative(at+".StartDensity", p.StartDensity)
-		v.notNegative(at+".EndDensity", p.EndDensity)
-	}
-	v.notNegative("Initial.BackgroundFlow", s.Initial.BackgroundFlow)
-	if len(s.Initial.Profile) > 0 && s.Initial.BackgroundFlow != 0 {
-		v.add("Initial.BackgroundFlow", RuleConflict, s.Initial.BackgroundFlow, "0 where a profile is given")
-	}
-	for i, q := range s.Initial.Queues {
-		at := fmt.Sprintf("Initial.Queues[%d]", i)
-		v.notNegative(at+".Vehicles", q.Vehicles)
-		v.notNegative(at+".Length", q.Length)
-		if (q.Vehicles > 0) == (q.Length > 0) {
-			v.add(at, RuleRequired, q, "exactly one of vehicles and length, more than 0")
-		}
-	}
-}
-
-// validateInitial checks the initial traffic against the layout.
-func (s *Scenario) validateInitial(nodes []node, segments []segment, v *violations) {
-	s.validateProfile(segments, v)
-	if len(s.Initial.Profile) == 0 {
-		s.validateBackground(v)
-	}
-	s.validateStanding(nodes, segments, v)
-}
-
-func (s *Scenario) validateBackground(v *violations) {
-	for i := range s.Segments {
-		if c := s.Segments[i].Relation.Capacity(); s.Initial.BackgroundFlow > c*(1+closeness) {
-			v.add("Initial.BackgroundFlow", RuleRange, s.Initial.BackgroundFlow, fmt.Sprintf("at most %g, the capacity of %s", c, s.segmentName(i)))
-			return
-		}
-	}
-}
-
-func (s *Scenario) validateProfile(segments []segment, v *violations) {
-	profile := s.Initial.Profile
-	start, end := segments[0].start, segments[len(segments)-1].end
-	for i, p := range profile {
-		at := fmt.Sprintf("Initial.Profile[%d]", i)
-		if math.Abs(p.Start-start) > samePlace {
-			v.add(at+".Start", RuleCover, p.Start, fmt.Sprintf("%g, where the piece before it (or the corridor's entry) leaves off", start))
-		}
-		start = p.End
-		validateDensities(at, p, segments, v)
-	}
-	if n := len(profile); n > 0 && math.Abs(profile[n-1].End-end) > samePlace {
-		v.add(fmt.Sprintf("Initial.Profile[%d].End", n-1), RuleCover, profile[n-1].End, fmt.Sprintf("%g, the corridor's exit", end))
-	}
-}
-
-// validateDensities checks a piece against the jam density of each segment that it lies on.
-func validateDensities(at string, p ProfilePiece, segments []segment, v *violations) {
-	for i := range segments {
-		seg := &segments[i]
-		part, ok := p.clip(seg.start, seg.end)
-		if !ok {
-			continue
-		}
-		for _, end := range [2]struct {
-			field   string
-			density float64
-		}{{".StartDensity", part.StartDensity}, {".EndDensity", part.EndDensity}} {
-			if end.density > seg.diagram.jam*(1+closeness) {
-				v.add(at+end.field, RuleRange, end.density, fmt.Sprintf("at most %g, the jam density of %s", seg.diagram.jam, seg.name))
-				return
-			}
-		}
-	}
-}
-
-func (s *Scenario) validateStanding(nodes []node, segments []segment, v *violations) {
-	for i, q := range s.Initial.Queues {
-		at := fmt.Sprintf("Initial.Queues[%d]", i)
-		n := nodeNamed(nodes, q.Node)
-		if n < 0 {
-			v.add(at+".Node", RuleUnknown, q.Node, "the name of a node of the corridor")
-			continue
-		}
-		if n == 0 {
-			v.add(at+".Node", RuleRange, q.Node, "a node with road upstream of it; what waits before the entry is no part of the initial traffic")
-			continue
-		}
-		if nodes[n].kind != SignalNode && nodes[n].heldFlow(segments) >= segments[n-1].diagram.capacity*(1-closeness) {
-			v.add(at+".Node", RuleConflict, q.Node, "a node that holds traffic back at time 0; this one passes the capacity of the road before it")
-			continue
-		}
-		if _, rest := q.parts(nodes, segments); rest > samePlace {
-			unit := "vehicles"
-			if q.Length > 0 {
-				unit = "m"
-			}
-			v.add(at, RuleFits, q, fmt.Sprintf("a queue that fits on the road behind the node; %g %s of it do not", rest, unit))
-		}
-	}
-	s.validateOverlap(nodes, segments, v)
-}
-
-func (s *Scenario) validateOverlap(nodes []node, segments []segment, v *violations) {
-	if len(v.list) > 0 {
-		return
-	}
-	var seen []standingPiece
-	for i, q := range s.Initial.Queues {
-		parts, _ := q.parts(nodes, segments)
-		for _, p := range parts {
-			for _, o := range seen {
-				if p.segment == o.segment && p.piece.Start < o.piece.End-samePlace && o.piece.Start < p.piece.End-samePlace {
-					v.add(fmt.Sprintf("Initial.Queues[%d]", i), RuleConflict, q, "queues that do not overlap")
-					return
-				}
-			}
-		}
-		seen = append(seen, parts...)
-	}
 }

@@ -10,16 +10,7 @@ import (
 // - a region used up, a node whose surroundings changed - into new fronts. It knows neither what kinds of
 // node there are nor what will be asked of the solution.
 type kernel struct {
-	horizon  float64
-	segments []segment
-	nodes    []node
-
-	regions []region
-	bounds  []bound // of the regions, parallel to them
-	fronts  []front
-	paths   []path
-	steps   []step     // what happened, in order
-	limits  []bounding // what bounded each region downstream, over time
+	plane
 
 	agenda agenda
 	now    float64
@@ -27,6 +18,19 @@ type kernel struct {
 
 	interactions int64
 	refused      *ClosedFormError
+}
+
+// plane is the time-space plane of a corridor, filled with regions and the fronts between them.
+type plane struct {
+	horizon  float64
+	segments []segment
+	nodes    []node
+	regions  []region
+	bounds   []bound // of the regions, parallel to them
+	fronts   []front
+	paths    []path
+	steps    []step     // what happened, in order
+	limits   []bounding // what bounded each region downstream, over time
 }
 
 // segment is a homogeneous stretch of road as the kernel sees it, with what counts as equal on it.
@@ -163,123 +167,3 @@ func (k *kernel) simultaneous() float64 { return k.now + k.slack() }
 
 // slack is the difference of times that counts as none.
 func (k *kernel) slack() float64 { return closeness * k.horizon }
-
-// usedUp takes out a region whose bounds have met, with all neighbours that are used up at the same time and
-// place, and solves what is then between their outer neighbours.
-func (k *kernel) usedUp(g int32) {
-	until := k.simultaneous()
-	first, last := g, g
-	for up := k.bounds[first].up; up >= 0; up = k.bounds[first].up {
-		next := k.fronts[up].up
-		if k.bounds[next].due > until {
-			break
-		}
-		first = next
-	}
-	for down := k.bounds[last].down; down >= 0; down = k.bounds[last].down {
-		next := k.fronts[down].down
-		if k.bounds[next].due > until {
-			break
-		}
-		last = next
-	}
-	up, down := k.bounds[first].up, k.bounds[last].down
-	switch {
-	case up < 0:
-		k.visit(^up)
-	case down < 0:
-		k.visit(^down)
-	default:
-		k.merge(first, last)
-	}
-}
-
-// merge solves what meets where the regions from first to last are used up, and ends them.
-func (k *kernel) merge(first, last int32) {
-	a, b := k.bounds[first].up, k.bounds[last].down
-	x := k.meetingPlace(a, b)
-	up, down := k.fronts[a].up, k.fronts[b].down
-	born := int32(len(k.fronts))
-	n := k.regions[up].count(x, k.now)
-	if k.connect(up, down, x, k.now, n) {
-		k.retire(first, last, Merged, born)
-	} else {
-		k.retire(first, last, Merged, -1)
-		k.absorb(up, down)
-	}
-	k.record(up, down, born)
-	k.reschedule(up)
-}
-
-// meetingPlace of two fronts now: that of a straight one where there is one, being the more exact.
-func (k *kernel) meetingPlace(a, b int32) float64 {
-	fa, fb := &k.fronts[a], &k.fronts[b]
-	if fa.path >= 0 && fb.path < 0 {
-		return k.place(fb, k.now)
-	}
-	return k.place(fa, k.now)
-}
-
-// retire ends the regions from first to last and all fronts that bound them.
-func (k *kernel) retire(first, last int32, ends FrontEnd, into int32) {
-	k.endFront(k.bounds[first].up, ends, into)
-	for g := first; ; g = k.fronts[k.bounds[g].down].down {
-		b := &k.bounds[g]
-		b.died = k.now
-		b.stamp++
-		k.endFront(b.down, ends, into)
-		if g == last {
-			return
-		}
-	}
-}
-
-func (k *kernel) endFront(id int32, ends FrontEnd, into int32) {
-	if id < 0 {
-		return
-	}
-	f := &k.fronts[id]
-	f.end, f.ends, f.into = k.now, ends, into
-}
-
-// absorb makes up and the equal uniform region down one: up takes over the downstream bound.
-func (k *kernel) absorb(up, down int32) {
-	b := &k.bounds[down]
-	b.died = k.now
-	b.stamp++
-	k.boundDown(up, b.down)
-	if b.down >= 0 {
-		k.fronts[b.down].up = up
-		return
-	}
-	n := &k.nodes[^b.down]
-	n.up = up
-	n.note(k.now)
-}
-
-// record notes the fronts born between two regions since born; a node stands for a region as ^index.
-func (k *kernel) record(up, down, born int32) {
-	k.steps = append(k.steps, step{time: k.now, up: up, down: down, firstFront: born, lastFront: int32(len(k.fronts))})
-}
-
-// reschedule puts the regions from first on downstream that are new or have new bounds on the agenda: up to
-// and including the first that is neither.
-func (k *kernel) reschedule(first int32) {
-	for g := first; ; {
-		k.schedule(g)
-		down := k.bounds[g].down
-		if down < 0 || k.fronts[down].t0 < k.now {
-			return
-		}
-		g = k.fronts[down].down
-	}
-}
-
-func (k *kernel) schedule(g int32) {
-	b := &k.bounds[g]
-	b.stamp++
-	b.due = k.meeting(g)
-	if b.due <= k.horizon {
-		k.agenda.push(event{time: b.due, target: g, stamp: b.stamp})
-	}
-}

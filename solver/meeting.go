@@ -26,15 +26,15 @@ func (k *kernel) meeting(g int32) float64 {
 }
 
 // boundary of a region: a straight line, or a path that starts at the line's origin.
-func (k *kernel) boundary(id int32) (line, *path) {
+func (p *plane) boundary(id int32) (line, *path) {
 	if id < 0 {
-		return line{x0: k.nodes[^id].x, t0: 0}, nil
+		return line{x0: p.nodes[^id].x, t0: 0}, nil
 	}
-	f := &k.fronts[id]
+	f := &p.fronts[id]
 	if f.path < 0 {
-		return k.line(f), nil
+		return p.line(f), nil
 	}
-	return k.line(f), &k.paths[f.path]
+	return p.line(f), &p.paths[f.path]
 }
 
 // alongIf says that a straight bound of a profile is one of the profile's characteristics, unless it is a node.

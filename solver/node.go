@@ -27,11 +27,11 @@ func (k NodeKind) String() string {
 type Governor int8
 
 const (
-	// ByDemand: all that arrives passes.
+	// ByDemand means: all that arrives passes.
 	ByDemand Governor = iota
-	// ByCapacity: the node itself holds traffic back.
+	// ByCapacity means: the node itself holds traffic back.
 	ByCapacity
-	// BySupply: what is downstream cannot take more.
+	// BySupply means: what is downstream cannot take more.
 	BySupply
 )
 
@@ -48,15 +48,21 @@ type node struct {
 	upSeg    int32 // -1 at the entry
 	downSeg  int32 // -1 at the exit
 	up, down int32 // live regions on its two sides, -1 where there is none
-	capacity Schedule
-	demand   Schedule // of the entry
-	excess   Excess
-	waiting  bool // an entry queue stands
-	alike    bool // the same relation on both sides
-	stamp    uint32
-	due      float64
-	governs  Governor
-	history  []passage
+
+	restriction Schedule  // what it lets pass
+	capacity    timetable // the same
+	demand      timetable // of the entry
+	// Flows at the node, and their slopes, that differ by less count as equal: slopes where they would not add up
+	// to a different flow by the horizon.
+	flowTolerance, slopeTolerance float64
+
+	excess  Excess
+	waiting bool // an entry queue stands
+	alike   bool // the same relation on both sides
+	stamp   uint32
+	due     float64
+	governs Governor
+	history []passage
 }
 
 // passage is what stands on the two sides of a node, and what governs it, from a time on.
@@ -94,7 +100,7 @@ func (k *kernel) visit(index int32) {
 func (k *kernel) takeIn(n *node) float64 {
 	until := k.simultaneous()
 	now := k.now
-	for _, t := range [3]float64{n.due, n.capacity.next(now), n.demand.next(now)} {
+	for _, t := range [3]float64{n.due, n.capacity.next(), n.demand.next()} {
 		if t <= until {
 			now = math.Max(now, t)
 		}
@@ -141,13 +147,13 @@ func (k *kernel) settle(index int32) {
 	if n.waiting && k.backlog(n) <= closeness*(1+n.demand.total(k.now)) {
 		n.waiting = false
 	}
-	offered, allowed, accepted := k.offered(n), rate{n.allowed(k.now), -1}, k.accepted(n)
+	offered, allowed, accepted := k.offered(n), rate{n.capacity.law(k.now), -1}, k.accepted(n)
 	flow := offered
 	n.governs = ByDemand
-	if k.less(n, allowed, flow) {
+	if n.less(allowed, flow) {
 		flow, n.governs = allowed, ByCapacity
 	}
-	if k.less(n, accepted, flow) {
+	if n.less(accepted, flow) {
 		flow, n.governs = accepted, BySupply
 	}
 	if n.upSeg < 0 && n.excess == Waits && n.governs != ByDemand {
@@ -172,103 +178,12 @@ func (k *kernel) countAt(n *node) float64 {
 }
 
 // less compares two rates: by value, and where the values agree by what they are about to do.
-func (k *kernel) less(n *node, a, b rate) bool {
-	flowTolerance, slopeTolerance := k.tolerances(n)
+func (n *node) less(a, b rate) bool {
 	if math.IsInf(a.value, 1) || math.IsInf(b.value, 1) {
 		return a.value < b.value
 	}
-	if d := a.value - b.value; math.Abs(d) > flowTolerance {
+	if d := a.value - b.value; math.Abs(d) > n.flowTolerance {
 		return d < 0
 	}
-	return a.slope < b.slope-slopeTolerance
-}
-
-// tolerances below which flows at a node, and their slopes, count as equal: slopes where they would not add
-// up to a different flow by the horizon.
-func (k *kernel) tolerances(n *node) (flow, slope float64) {
-	if n.upSeg >= 0 {
-		flow = k.segments[n.upSeg].flowTolerance
-	}
-	if n.downSeg >= 0 {
-		flow = math.Max(flow, k.segments[n.downSeg].flowTolerance)
-	}
-	return flow, flow / k.horizon
-}
-
-func (n *node) allowed(t float64) law {
-	if n.capacity == nil {
-		return law{value: math.Inf(1)}
-	}
-	return n.capacity.at(t, math.Inf(1))
-}
-
-// offered is what wishes to pass.
-func (k *kernel) offered(n *node) rate {
-	if n.upSeg >= 0 {
-		return k.trace(n.up, n.x, upSide)
-	}
-	if n.waiting {
-		return rate{law{value: math.Inf(1)}, -1}
-	}
-	return rate{n.demand.at(k.now, 0), -1}
-}
-
-// accepted is what can be taken in downstream.
-func (k *kernel) accepted(n *node) rate {
-	if n.downSeg < 0 {
-		return rate{law{value: math.Inf(1)}, -1}
-	}
-	return k.trace(n.down, n.x, downSide)
-}
-
-// backlog is the number of vehicles in the entry queue.
-func (k *kernel) backlog(n *node) float64 {
-	return n.demand.total(k.now) - k.regions[n.down].count(n.x, k.now)
-}
-
-// trace is the demand of the region upstream of a place, or the supply of the region downstream of it.
-func (k *kernel) trace(g int32, x float64, s side) rate {
-	r := &k.regions[g]
-	seg := &k.segments[r.seg]
-	d := seg.diagram
-	var label float64
-	var saturated bool
-	if s == upSide {
-		label = r.edgeLabel(x, k.now, r.downLabel)
-		saturated = label >= d.criticalLo-seg.densityTolerance
-	} else {
-		label = r.edgeLabel(x, k.now, r.upLabel)
-		saturated = label <= d.criticalHi+seg.densityTolerance
-	}
-	if saturated && !k.leavesCapacity(g, label, s) {
-		return rate{law{value: d.capacity}, -1}
-	}
-	return k.flowOf(g, label)
-}
-
-// leavesCapacity reports whether a profile whose density at a node is critical right now brings less and less
-// from now on.
-func (k *kernel) leavesCapacity(g int32, label float64, s side) bool {
-	r := &k.regions[g]
-	if r.uniform() || r.spread(k.now) == 0 {
-		return false
-	}
-	seg := &k.segments[r.seg]
-	coming := r.waveSpeed(label)
-	critical := seg.diagram.criticalLo
-	if s == downSide {
-		coming, critical = -coming, seg.diagram.criticalHi
-	}
-	return coming > seg.speedTolerance && math.Abs(label-critical) <= seg.densityTolerance && k.flowOf(g, label).slope < 0
-}
-
-// flowOf is the flow past a fixed place at which the region has density label.
-func (k *kernel) flowOf(g int32, label float64) rate {
-	r := &k.regions[g]
-	q := k.segments[r.seg].diagram.pieces[r.piece].flow(label)
-	if r.uniform() {
-		return rate{law{value: q}, -1}
-	}
-	c := r.waveSpeed(label)
-	return rate{law{q, -c * c * r.gradient(k.now)}, g}
+	return a.slope < b.slope-n.slopeTolerance
 }

@@ -35,8 +35,8 @@ const turningParts = 16
 // turningPoints calls look where a curved front turns back downstream.
 func (s *Solution) turningPoints(p part, look func(t, place float64)) {
 	f := &s.fronts[p.bound]
-	speed := func(t float64) float64 { return -s.kernel.velocity(f, t) }
-	forEachFall(speed, p.from, p.to, turningParts, func(t float64) { look(t, s.kernel.place(f, t)) })
+	speed := func(t float64) float64 { return -s.velocity(f, t) }
+	forEachFall(speed, p.from, p.to, turningParts, func(t float64) { look(t, s.place(f, t)) })
 }
 
 // forEachFall calls found at the zeros in (a, b) where f goes from positive to negative, as far as they lie in
@@ -155,7 +155,7 @@ func (s *Solution) rateThrough(e stripEnd, t float64) float64 {
 	r := &s.regions[e.region]
 	x, v := s.boundPlace(e.bound, t), 0.0
 	if e.bound >= 0 {
-		v = s.kernel.velocity(&s.fronts[e.bound], t)
+		v = s.velocity(&s.fronts[e.bound], t)
 	}
 	k := r.edgeLabel(x, t, r.k)
 	return r.flow(k) - v*k

@@ -14,7 +14,7 @@ func (k *kernel) plan(index int32) {
 	}
 	// Waves sent out by one place less than this apart could not be told from each other.
 	n.due = math.Max(n.due, k.simultaneous())
-	n.due = math.Min(n.due, math.Min(n.capacity.next(k.now), n.demand.next(k.now)))
+	n.due = math.Min(n.due, math.Min(n.capacity.next(), n.demand.next()))
 	if n.due <= k.horizon {
 		k.agenda.push(event{time: n.due, target: ^index, stamp: n.stamp})
 	}
@@ -22,7 +22,7 @@ func (k *kernel) plan(index int32) {
 
 // changeOfGovernor is when one of the other two flows becomes less than the governing one.
 func (k *kernel) changeOfGovernor(n *node) float64 {
-	all := [3]rate{ByDemand: k.offered(n), ByCapacity: {n.allowed(k.now), -1}, BySupply: k.accepted(n)}
+	all := [3]rate{ByDemand: k.offered(n), ByCapacity: {n.capacity.law(k.now), -1}, BySupply: k.accepted(n)}
 	governing := all[n.governs]
 	t := math.Inf(1)
 	for g, other := range all {
@@ -36,7 +36,6 @@ func (k *kernel) changeOfGovernor(n *node) float64 {
 // overtakes is when the governing flow rises above the other, which does not follow a curved profile. Along a
 // fixed place a curved profile brings q - c² (2 s T + d T²)/(2 (s + d T)²), which makes a cubic of the difference.
 func (k *kernel) overtakes(n *node, governing, other rate) float64 {
-	_, slopeTolerance := k.tolerances(n)
 	if g := governing.profile; g >= 0 && k.regions[g].d != 0 {
 		l := k.regions[g].from(n.x, k.now)
 		a, b := other.value-governing.value, other.slope
@@ -49,7 +48,7 @@ func (k *kernel) overtakes(n *node, governing, other rate) float64 {
 		return later(k.now, k.now+c.descent(0, k.horizon-k.now))
 	}
 	closing := governing.slope - other.slope
-	if closing <= slopeTolerance {
+	if closing <= n.slopeTolerance {
 		return math.Inf(1)
 	}
 	return later(k.now, k.now+(other.value-governing.value)/closing)
@@ -83,7 +82,7 @@ func (k *kernel) cornerReached(n *node) float64 {
 // queueGone is when the entry queue will have gone in, if the region at the entry stays.
 func (k *kernel) queueGone(n *node) float64 {
 	r := &k.regions[n.down]
-	demand := n.demand.at(k.now, 0)
+	demand := n.demand.law(k.now)
 	c := cubic{k.backlog(n), demand.value, 0.5 * demand.slope, 0}
 	label := r.edgeLabel(n.x, k.now, r.upLabel)
 	speed := r.waveSpeed(label)

@@ -84,7 +84,7 @@ type Excess int
 const (
 	// Waits in an entry queue outside the corridor, first in, first out.
 	Waits Excess = iota
-	// TurnsAway: does not come; it is counted.
+	// TurnsAway means: does not come; it is counted.
 	TurnsAway
 )
 

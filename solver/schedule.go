@@ -41,31 +41,13 @@ func (p *SchedulePiece) rate(t float64) float64 {
 	return math.Max(0, p.Rate+p.Slope*(t-p.Start)) // a ramp that ends at 0 may round below it
 }
 
-// total is the integral of a finite schedule from 0 to t, with rate 0 before the first piece.
-func (s Schedule) total(t float64) float64 {
-	sum := 0.0
-	for i := range s {
-		from, to := s.span(i, t)
-		if to > from {
-			sum += (to - from) * 0.5 * (s[i].rate(from) + s[i].rate(to))
-		}
+// during is the integral of piece i from the later of 0 and its start to a time not after its end.
+func (s Schedule) during(i int, until float64) float64 {
+	from := math.Max(0, s[i].Start)
+	if until <= from {
+		return 0
 	}
-	return sum
-}
-
-// moment is the integral from 0 to t of the total, the time integral of the cumulative count.
-func (s Schedule) moment(t float64) float64 {
-	sum := 0.0
-	for i := range s {
-		from, to := s.span(i, t)
-		if to <= from {
-			continue
-		}
-		// The piece adds rate(u) du at u, which is then counted for the remaining t-u.
-		h, r := to-from, s[i].rate(from)
-		sum += (t-to)*h*(r+0.5*s[i].Slope*h) + h*h*(0.5*r+s[i].Slope*h/6)
-	}
-	return sum
+	return (until - from) * 0.5 * (s[i].rate(from) + s[i].rate(until))
 }
 
 // span is the part of [0, t] during which piece i holds.
@@ -75,16 +57,6 @@ func (s Schedule) span(i int, t float64) (from, to float64) {
 		to = math.Min(t, s[i+1].Start)
 	}
 	return from, to
-}
-
-// fromStart moves to 0 what begins within slack after it: the first state and such a change are one.
-func (s Schedule) fromStart(slack float64) Schedule {
-	for i := range s {
-		if s[i].Start > 0 && s[i].Start <= slack {
-			s[i].Start = 0
-		}
-	}
-	return s
 }
 
 // least is the lesser of two capacities at every time; both are unrestricted before their first piece.

@@ -72,12 +72,11 @@ func (k *kernel) carries(n *node, g int32, s side, flow rate) bool {
 	if flow.profile >= 0 && n.alike {
 		return k.continues(&k.regions[flow.profile], r, n.x)
 	}
-	flowTolerance, slopeTolerance := k.tolerances(n)
 	own := k.flowOf(g, label)
 	if r.spread(k.now) == 0 || r.waveSpeed(label) == 0 {
 		own.slope = 0 // the characteristic at the node stays there
 	}
-	return math.Abs(own.value-flow.value) <= flowTolerance && math.Abs(own.slope-flow.slope) <= slopeTolerance
+	return math.Abs(own.value-flow.value) <= n.flowTolerance && math.Abs(own.slope-flow.slope) <= n.slopeTolerance
 }
 
 // atEnd reports whether a profile sent out by a node has reached the last density of its piece there.

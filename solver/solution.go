@@ -10,36 +10,21 @@ import (
 // Solution is the exact solution of a scenario from time 0 to its horizon. It is immutable and may be asked by
 // any number of goroutines at once.
 type Solution struct {
-	horizon      float64
-	excess       Excess
-	nodes        []node
-	segments     []segment
+	plane
 	roads        []int    // the scenario's segment that each segment is a part of
 	roadNames    []string // of the scenario's segments
-	regions      []region
-	bounds       []bound
-	fronts       []front
-	paths        []path
-	steps        []step
 	interactions int64
 	bytes        int64
-
-	kernel *kernel // the same data, for the geometry of fronts
-	index  []segmentIndex
-	strips func() *stripSet
+	index        []segmentIndex
+	strips       func() *stripSet
 }
 
 func newSolution(s *Scenario, l layout, k *kernel) *Solution {
-	sol := &Solution{
-		horizon: s.Horizon, excess: s.Entry.Excess, nodes: k.nodes, segments: k.segments,
-		regions: k.regions, bounds: k.bounds, fronts: k.fronts, paths: k.paths, steps: k.steps,
-		interactions: k.interactions, bytes: k.bytes(), kernel: k, roads: l.roads,
-	}
-	k.agenda, k.waves = nil, nil
+	sol := &Solution{plane: k.plane, roads: l.roads, interactions: k.interactions, bytes: k.bytes()}
 	for i := range s.Segments {
 		sol.roadNames = append(sol.roadNames, s.segmentName(i))
 	}
-	sol.index = newIndex(k)
+	sol.index = newIndex(&sol.plane)
 	sol.strips = sync.OnceValue(func() *stripSet { return newStripSet(sol) })
 	return sol
 }

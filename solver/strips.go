@@ -132,7 +132,7 @@ func (set *stripSet) unite(up, down int32, e *step) {
 	}
 }
 
-func (s *strip) mark(marks *[]mark, since float64, bound int32) {
+func (p *strip) mark(marks *[]mark, since float64, bound int32) {
 	if n := len(*marks); n > 0 && (*marks)[n-1].since == since {
 		(*marks)[n-1].bound = bound
 		return
@@ -198,8 +198,8 @@ func (set *stripSet) finish() {
 	}
 }
 
-// end of the strip at time t: the place, and the count there.
-func (set *stripSet) end(s *strip, marks []mark, t float64, upstream bool) (place, count float64) {
+// end of a strip at time t: the place, and the count there.
+func (set *stripSet) end(marks []mark, t float64, upstream bool) (place, count float64) {
 	i := sort.Search(len(marks), func(i int) bool { return marks[i].since > t }) - 1
 	bound := marks[max(i, 0)].bound
 	sol := set.sol
@@ -209,7 +209,7 @@ func (set *stripSet) end(s *strip, marks []mark, t float64, upstream bool) (plac
 	}
 	f := &sol.fronts[bound]
 	t = math.Max(f.t0, math.Min(f.end, t))
-	place = sol.kernel.place(f, t)
+	place = sol.place(f, t)
 	g := f.down
 	if !upstream {
 		g = f.up

@@ -78,7 +78,7 @@ func (s *Solution) outside(out *CorridorTotals, t, entered float64) {
 	if excess <= closeness*(1+out.Entered) {
 		excess = 0
 	}
-	if s.excess == TurnsAway {
+	if s.nodes[0].excess == TurnsAway {
 		out.TurnedAway = excess
 		return
 	}
@@ -167,7 +167,7 @@ func (s *Solution) placeMoment(seg int32, t float64) float64 {
 	g := s.nodes[seg].at(t).down
 	sum := 0.0
 	for _, f := range s.frontsAt(seg, t) {
-		to := math.Min(s.segments[seg].end, math.Max(x, s.kernel.place(f, t)))
+		to := math.Min(s.segments[seg].end, math.Max(x, s.place(f, t)))
 		sum += s.regionMoment(g, x, to, t)
 		x, g = to, f.down
 	}

@@ -77,7 +77,7 @@ func (s *Solution) entersAt(t float64) (enters float64, ok bool) {
 	n := &s.nodes[0]
 	arrived := n.demand.total(t)
 	entered := s.regions[n.at(t).down].count(n.x, t)
-	if s.excess == TurnsAway || arrived-entered <= closeness*(1+arrived) {
+	if s.nodes[0].excess == TurnsAway || arrived-entered <= closeness*(1+arrived) {
 		return t, true
 	}
 	// The first stretch of the entry's history at whose end the vehicle is in.

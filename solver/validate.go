@@ -195,10 +195,10 @@ func (s *Scenario) validateEnds(v *violations) {
 // validateClosedForm refuses schedules that change linearly in time next to a curved relation: what they send
 // out has no closed form.
 func (s *Scenario) validateClosedForm(nodes []node, segments []segment, v *violations) {
-	curved := func(seg int32) bool { return seg >= 0 && segments[seg].diagram.curved(0, segments[seg].diagram.jam) }
+	curved := func(seg int32) bool { return seg >= 0 && segments[seg].diagram.curved() }
 	for i := range nodes {
 		n := &nodes[i]
-		if (n.capacity.sloped() || n.demand.sloped()) && (curved(n.upSeg) || curved(n.downSeg)) {
+		if (n.restriction.sloped() || n.demand.schedule.sloped()) && (curved(n.upSeg) || curved(n.downSeg)) {
 			v.add(s.scheduleField(n), RuleClosedForm, nil, "steps: a rate that changes linearly in time has no closed form on a curved flow-density relation")
 		}
 	}
@@ -206,19 +206,13 @@ func (s *Scenario) validateClosedForm(nodes []node, segments []segment, v *viola
 
 // scheduleField is the field path of the schedule that governs the node.
 func (s *Scenario) scheduleField(n *node) string {
-	if field := s.controlField(n.name); field != "" && n.capacity.sloped() {
+	if field := s.controlField(n.name); field != "" && n.restriction.sloped() {
 		return field + ".Capacity"
 	}
-	if n.demand.sloped() {
+	if n.demand.schedule.sloped() {
 		return "Entry.Demand"
 	}
 	return "Exit.Capacity"
-}
-
-func (v *violations) within(field string, x, lo, hi float64) {
-	if v.finite(field, x) && (x < lo || x > hi) {
-		v.add(field, RuleRange, x, fmt.Sprintf("between %g and %g", lo, hi))
-	}
 }
 
 // named checks the name of a bottleneck or signal: present, and not that of another node.

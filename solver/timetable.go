@@ -1,0 +1,74 @@
+package solver
+
+import (
+	"math"
+	"sort"
+)
+
+// timetable is a schedule made ready for the event loop, which asks for it in rising order of time, and for
+// totals at any time.
+type timetable struct {
+	schedule Schedule
+	before   float64   // the rate before the first piece
+	totals   []float64 // integral of the rate from 0 to the later of 0 and each piece's start
+	current  int       // piece that held when the loop last asked, -1 before the first
+}
+
+// newTimetable keeps a copy of the schedule. What begins within slack after 0 begins at 0: the first state and
+// such a change are one.
+func newTimetable(s Schedule, before, slack float64) timetable {
+	t := timetable{before: before, current: -1, schedule: append(Schedule(nil), s...), totals: make([]float64, len(s))}
+	for i := range t.schedule {
+		if start := &t.schedule[i].Start; *start > 0 && *start <= slack {
+			*start = 0
+		}
+	}
+	for i := 1; i < len(s); i++ {
+		t.totals[i] = t.totals[i-1] + t.schedule.during(i-1, t.schedule[i].Start)
+	}
+	return t
+}
+
+// law returns the rate from time t on. Times must not fall from call to call.
+func (t *timetable) law(now float64) law {
+	for t.current+1 < len(t.schedule) && t.schedule[t.current+1].Start <= now {
+		t.current++
+	}
+	if t.current < 0 {
+		return law{value: t.before}
+	}
+	p := &t.schedule[t.current]
+	return law{value: p.rate(now), slope: p.Slope}
+}
+
+// next returns the first time after that of the last law at which another piece begins, +Inf for none.
+func (t *timetable) next() float64 {
+	if t.current+1 < len(t.schedule) {
+		return t.schedule[t.current+1].Start
+	}
+	return math.Inf(1)
+}
+
+// total is the integral of a finite rate from 0 to a time, with rate 0 before the first piece.
+func (t *timetable) total(at float64) float64 {
+	i := sort.Search(len(t.schedule), func(i int) bool { return t.schedule[i].Start > at }) - 1
+	if i < 0 {
+		return 0
+	}
+	return t.totals[i] + t.schedule.during(i, at)
+}
+
+// moment is the integral of total from 0 to a time.
+func (t *timetable) moment(at float64) float64 {
+	sum := 0.0
+	for i := range t.schedule {
+		from, to := t.schedule.span(i, at)
+		if to <= from {
+			continue
+		}
+		// A piece adds rate(u) du at u, which is then counted for the remaining at-u.
+		h, r := to-from, t.schedule[i].rate(from)
+		sum += (at-to)*h*(r+0.5*t.schedule[i].Slope*h) + h*h*(0.5*r+t.schedule[i].Slope*h/6)
+	}
+	return sum
+}
