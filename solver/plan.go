@@ -22,6 +22,9 @@ func (k *kernel) plan(index int32) {
 
 // changeOfGovernor is when one of the other two flows becomes less than the governing one.
 func (k *kernel) changeOfGovernor(n *node) float64 {
+	if k.steady(n) {
+		return math.Inf(1)
+	}
 	all := [3]rate{ByDemand: k.offered(n), ByCapacity: {n.capacity.law(k.now), -1}, BySupply: k.accepted(n)}
 	governing := all[n.governs]
 	t := math.Inf(1)
@@ -31,6 +34,12 @@ func (k *kernel) changeOfGovernor(n *node) float64 {
 		}
 	}
 	return t
+}
+
+// steady reports whether nothing at the node changes by itself before a schedule does: the common case.
+func (k *kernel) steady(n *node) bool {
+	return n.capacity.law(k.now).slope == 0 && n.demand.law(k.now).slope == 0 &&
+		(n.up < 0 || k.regions[n.up].uniform()) && (n.down < 0 || k.regions[n.down].uniform())
 }
 
 // overtakes is when the governing flow rises above the other, which does not follow a curved profile. Along a

@@ -6,18 +6,18 @@ import (
 )
 
 // timetable is a schedule made ready for the event loop, which asks for it in rising order of time, and for
-// totals at any time.
+// totals at any time. The zero value is the rate 0.
 type timetable struct {
 	schedule Schedule
 	before   float64   // the rate before the first piece
 	totals   []float64 // integral of the rate from 0 to the later of 0 and each piece's start
-	current  int       // piece that held when the loop last asked, -1 before the first
+	begun    int       // pieces that had begun when the loop last asked
 }
 
 // newTimetable keeps a copy of the schedule. What begins within slack after 0 begins at 0: the first state and
 // such a change are one.
 func newTimetable(s Schedule, before, slack float64) timetable {
-	t := timetable{before: before, current: -1, schedule: append(Schedule(nil), s...), totals: make([]float64, len(s))}
+	t := timetable{before: before, schedule: append(Schedule(nil), s...), totals: make([]float64, len(s))}
 	for i := range t.schedule {
 		if start := &t.schedule[i].Start; *start > 0 && *start <= slack {
 			*start = 0
@@ -29,22 +29,22 @@ func newTimetable(s Schedule, before, slack float64) timetable {
 	return t
 }
 
-// law returns the rate from time t on. Times must not fall from call to call.
+// law returns the rate from time now on. Times must not fall from call to call.
 func (t *timetable) law(now float64) law {
-	for t.current+1 < len(t.schedule) && t.schedule[t.current+1].Start <= now {
-		t.current++
+	for t.begun < len(t.schedule) && t.schedule[t.begun].Start <= now {
+		t.begun++
 	}
-	if t.current < 0 {
+	if t.begun == 0 {
 		return law{value: t.before}
 	}
-	p := &t.schedule[t.current]
+	p := &t.schedule[t.begun-1]
 	return law{value: p.rate(now), slope: p.Slope}
 }
 
 // next returns the first time after that of the last law at which another piece begins, +Inf for none.
 func (t *timetable) next() float64 {
-	if t.current+1 < len(t.schedule) {
-		return t.schedule[t.current+1].Start
+	if t.begun < len(t.schedule) {
+		return t.schedule[t.begun].Start
 	}
 	return math.Inf(1)
 }
