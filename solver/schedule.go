@@ -95,22 +95,31 @@ func (s Schedule) validate(field string, horizon float64, unlimited bool, v *vio
 	for i := range s {
 		at := fmt.Sprintf("%s[%d]", field, i)
 		p := &s[i]
-		v.finite(at+".Start", p.Start)
-		v.finite(at+".Slope", p.Slope)
+		v.within(at+".Start", p.Start, -maxHorizon, maxHorizon)
 		if i > 0 && p.Start <= s[i-1].Start {
 			v.add(at+".Start", RuleOrder, p.Start, fmt.Sprintf("later than the piece before it, %g", s[i-1].Start))
 		}
 		if math.IsInf(p.Rate, 1) && unlimited && p.Slope == 0 {
 			continue
 		}
-		v.notNegative(at+".Rate", p.Rate)
 		end := horizon
 		if i+1 < len(s) {
 			end = math.Min(end, s[i+1].Start)
 		}
-		if e := p.Rate + p.Slope*(end-p.Start); end > p.Start && e < -closeness*p.Rate {
-			v.add(at+".Slope", RuleNotNegative, p.Slope, fmt.Sprintf("the rate must stay 0 or more; it reaches %g at %g s", e, end))
-		}
+		p.validate(at, end, v)
+	}
+}
+
+// validate checks the rates of a piece that ends at the given time.
+func (p *SchedulePiece) validate(at string, end float64, v *violations) {
+	v.within(at+".Slope", p.Slope, -maxRate, maxRate)
+	v.notNegative(at+".Rate", p.Rate)
+	if p.Rate > maxRate {
+		v.add(at+".Rate", RuleRange, p.Rate, fmt.Sprintf("at most %g veh/s", float64(maxRate)))
+	}
+	last := p.Rate + p.Slope*(end-p.Start)
+	if end > p.Start && (last < -closeness*p.Rate || last > maxRate) {
+		v.add(at+".Slope", RuleRange, p.Slope, fmt.Sprintf("a slope that keeps the rate between 0 and %g veh/s; it reaches %g at %g s", float64(maxRate), last, end))
 	}
 }
 

@@ -17,6 +17,7 @@ const (
 	minJamDensity  = 1e-4    // [veh/m]
 	maxJamDensity  = 1e3     // [veh/m]
 	minCapacity    = 1e-6    // [veh/s]
+	maxRate        = 1e6     // any rate, of demand or capacity [veh/s]
 	maxSwitches    = 1 << 20 // of one signal within the horizon
 	maxSegments    = 1 << 16
 	maxInputPieces = 1 << 20 // of one schedule or profile
