@@ -36,8 +36,9 @@ func (d *dice) chance(p float64) bool { return d.Float64() < p }
 // features says what a random corridor may contain.
 type features struct {
 	kinds                       []relationKind
-	segments                    int // at most
-	bottlenecks, signals        int // at most
+	segments                    int  // at most
+	same                        bool // all of one relation
+	bottlenecks, signals        int  // at most
 	atEnds                      bool
 	profile, queues             bool
 	steps, slopes, exit, refuse bool // demand steps, linear pieces, exit restricted, demand turned away
@@ -72,7 +73,7 @@ func (d *dice) road(c *corridor, f features) {
 	kind := f.kinds[d.IntN(len(f.kinds))]
 	spec := d.relation(kind)
 	for i := range 1 + d.IntN(f.segments) {
-		if i > 0 && !kind.curved() && d.chance(0.7) {
+		if i > 0 && !f.same && !kind.curved() && d.chance(0.7) {
 			spec.lanes = float64(1 + d.IntN(4))
 			if d.chance(0.5) {
 				spec = d.relation(straightKinds[d.IntN(len(straightKinds))])
