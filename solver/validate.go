@@ -108,14 +108,14 @@ func (s *Scenario) validateControls(end float64, v *violations) {
 		b := &s.Bottlenecks[i]
 		at := fmt.Sprintf("Bottlenecks[%d]", i)
 		v.named(at+".Name", b.Name, names)
-		v.within(at+".Place", b.Place, s.Origin-samePlace, math.Min(end, maxPlace)+samePlace)
+		v.within(at+".Place", b.Place, s.Origin-samePlace, min(end, maxPlace)+samePlace)
 		b.Capacity.validate(at+".Capacity", s.Horizon, true, v)
 	}
 	for i := range s.Signals {
 		g := &s.Signals[i]
 		at := fmt.Sprintf("Signals[%d]", i)
 		v.named(at+".Name", g.Name, names)
-		v.within(at+".Place", g.Place, s.Origin-samePlace, math.Min(end, maxPlace)+samePlace)
+		v.within(at+".Place", g.Place, s.Origin-samePlace, min(end, maxPlace)+samePlace)
 		if !(g.SaturationFlow > 0) {
 			v.add(at+".SaturationFlow", RulePositive, g.SaturationFlow, "more than 0")
 		}
@@ -134,7 +134,7 @@ func (s *Scenario) validateSwitches(at string, g *Signal, v *violations) {
 	if g.Plan.Cycle > maxHorizon {
 		v.add(at+".Plan.Cycle", RuleRange, g.Plan.Cycle, fmt.Sprintf("at most %g s", float64(maxHorizon)))
 	}
-	if n := s.Horizon / g.Plan.Cycle * float64(2*len(g.Plan.Greens)); n > maxSwitches {
+	if n := s.Horizon / g.Plan.Cycle * float64(2*max(1, len(g.Plan.Greens))); n > maxSwitches {
 		v.add(at+".Plan.Cycle", RuleRange, g.Plan.Cycle, fmt.Sprintf("long enough that the signal switches at most %d times within the horizon", maxSwitches))
 	}
 	if math.Abs(g.Plan.Offset) > maxHorizon || math.Abs(g.Plan.Offset) > maxSwitches*g.Plan.Cycle {
