@@ -10,26 +10,35 @@ import (
 // spellings of a place differ by roundings; no detector, stop line or map is surveyed to a micrometre.
 const samePlace = 1e-6
 
-// control is a bottleneck or a signal, sorted by place.
+// control is a bottleneck or a signal.
 type control struct {
-	name     string
-	kind     NodeKind
-	place    float64
-	capacity Schedule
+	name   string
+	kind   NodeKind
+	place  float64
+	signal *Signal  // where it is one
+	limits Schedule // of a bottleneck
 }
 
 // controls lists bottlenecks and signals by place.
 func (s *Scenario) controls() []control {
 	list := make([]control, 0, len(s.Bottlenecks)+len(s.Signals))
 	for _, b := range s.Bottlenecks {
-		list = append(list, control{b.Name, BottleneckNode, b.Place, b.Capacity})
+		list = append(list, control{name: b.Name, kind: BottleneckNode, place: b.Place, limits: b.Capacity})
 	}
 	for i := range s.Signals {
 		g := &s.Signals[i]
-		list = append(list, control{g.Name, SignalNode, g.Place, g.schedule(s.Horizon)})
+		list = append(list, control{name: g.Name, kind: SignalNode, place: g.Place, signal: g})
 	}
 	sort.SliceStable(list, func(i, j int) bool { return list[i].place < list[j].place })
 	return list
+}
+
+// capacity of the control over [0, horizon].
+func (c *control) capacity(horizon float64) Schedule {
+	if c.signal != nil {
+		return c.signal.schedule(horizon)
+	}
+	return c.limits
 }
 
 // segmentName of the segment with that index.
@@ -63,13 +72,13 @@ func (s *Scenario) layout() layout {
 			c := list[0]
 			list = list[1:]
 			if c.place <= from+samePlace {
-				nodes[len(nodes)-1].take(c)
+				nodes[len(nodes)-1].take(&c, s.Horizon)
 				continue
 			}
 			segments = append(segments, newSegment(s.segmentName(i), from, c.place, s.Segments[i].Relation.diagram))
 			roads = append(roads, i)
 			nodes = append(nodes, node{x: c.place})
-			nodes[len(nodes)-1].take(c)
+			nodes[len(nodes)-1].take(&c, s.Horizon)
 			from = c.place
 		}
 		segments = append(segments, newSegment(s.segmentName(i), from, end, s.Segments[i].Relation.diagram))
@@ -81,7 +90,7 @@ func (s *Scenario) layout() layout {
 	last.name, last.kind = ExitName, ExitNode
 	last.restriction = s.Exit.Capacity
 	for _, c := range list {
-		last.take(c)
+		last.take(&c, s.Horizon)
 	}
 	link(nodes, segments, s.Horizon)
 	for i := range nodes {
@@ -99,9 +108,9 @@ func (s *Scenario) joinName(i int) string {
 }
 
 // take puts a bottleneck or signal at the node.
-func (n *node) take(c control) {
+func (n *node) take(c *control, horizon float64) {
 	n.name, n.kind = c.name, c.kind
-	n.restriction = least(n.restriction, c.capacity)
+	n.restriction = least(n.restriction, c.capacity(horizon))
 }
 
 // link tells each node the segments at it, and what counts as equal there.
@@ -114,7 +123,7 @@ func link(nodes []node, segments []segment, horizon float64) {
 		}
 		n.alike = i > 0 && i < len(segments) && segments[i-1].diagram.same(segments[i].diagram)
 		for _, seg := range segments[max(0, i-1):min(i+1, len(segments))] {
-			n.flowTolerance = math.Max(n.flowTolerance, seg.flowTolerance)
+			n.flowTolerance = max(n.flowTolerance, seg.flowTolerance)
 		}
 		n.slopeTolerance = n.flowTolerance / horizon
 	}
@@ -148,6 +157,12 @@ func (k *kernel) reserve() {
 	k.regions = make([]region, 0, n)
 	k.bounds = make([]bound, 0, n)
 	k.fronts = make([]front, 0, n)
+	for i := range k.segments {
+		if k.segments[i].diagram.curved() {
+			k.paths = make([]path, 0, n/4)
+			break
+		}
+	}
 	k.limits = make([]bounding, 0, n+n/2)
 	k.steps = make([]step, 0, n)
 	k.agenda = make(agenda, 0, 64)
@@ -249,12 +264,12 @@ func (s *segment) cuts(a, b float64) []cut {
 	var out []cut
 	if a < b {
 		for i := d.pieceAbove(a); i <= d.pieceBelow(b); i++ {
-			out = append(out, cut{i, math.Max(a, d.pieces[i].lo), math.Min(b, d.pieces[i].hi)})
+			out = append(out, cut{i, max(a, d.pieces[i].lo), min(b, d.pieces[i].hi)})
 		}
 		return out
 	}
 	for i := d.pieceBelow(a); i >= d.pieceAbove(b); i-- {
-		out = append(out, cut{i, math.Min(a, d.pieces[i].hi), math.Max(b, d.pieces[i].lo)})
+		out = append(out, cut{i, min(a, d.pieces[i].hi), max(b, d.pieces[i].lo)})
 	}
 	return out
 }

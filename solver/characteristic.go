@@ -99,7 +99,7 @@ func (s *Solution) swallowed(seg int32, l line, until float64) float64 {
 		}
 		for _, id := range index.fronts[index.first[i]:index.first[i+1]] {
 			if f := &s.fronts[id]; f.kind == Shock {
-				until = math.Min(until, s.shockMeets(f, l, until))
+				until = min(until, s.shockMeets(f, l, until))
 			}
 		}
 	}
@@ -108,7 +108,7 @@ func (s *Solution) swallowed(seg int32, l line, until float64) float64 {
 
 // shockMeets is when a shock meets a wave within the life of both, +Inf where it does not.
 func (s *Solution) shockMeets(f *front, l line, until float64) float64 {
-	from, until := math.Max(l.t0, f.t0), math.Min(until, f.end)
+	from, until := max(l.t0, f.t0), min(until, f.end)
 	if from >= until {
 		return math.Inf(1)
 	}

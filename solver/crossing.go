@@ -23,11 +23,11 @@ func (p *path) crossing(x0, t0 float64, l line, along side, direction, now, limi
 	for c[0] == 0 && (c[1] != 0 || c[2] != 0 || c[3] != 0) {
 		c = cubic{c[1], c[2], c[3], 0} // they start at one point: that is no meeting
 	}
-	roots, n := c.roots(math.Max(0, now-t0-slack), math.Min(p.until, limit-t0))
+	roots, n := c.roots(max(0, now-t0-slack), min(p.until, limit-t0))
 	for _, T := range roots[:n] {
 		X := e + l.speed*T
 		if p.down.density(X, T)-p.up.density(X, T) > closeness*(p.down.k+p.up.k) {
-			return math.Max(now, t0+T)
+			return max(now, t0+T)
 		}
 	}
 	return math.Inf(1)

@@ -50,8 +50,8 @@ func (c *cubic) roots(from, to float64) (roots [3]float64, n int) {
 		}
 		w := -0.5 * (c[1] + math.Copysign(math.Sqrt(disc), c[1]))
 		a, b := w/c[2], c[0]/w
-		keep(math.Min(a, b))
-		keep(math.Max(a, b))
+		keep(min(a, b))
+		keep(max(a, b))
 	case c[1] != 0:
 		keep(-c[0] / c[1])
 	}
@@ -61,7 +61,7 @@ func (c *cubic) roots(from, to float64) (roots [3]float64, n int) {
 // cubicRoots looks at the three stretches of [from, to] between the turning points; each holds at most one.
 func (c *cubic) cubicRoots(from, to float64) (roots [3]float64, n int) {
 	lo, hi := c.turns()
-	ends := [4]float64{from, math.Max(from, math.Min(to, lo)), math.Max(from, math.Min(to, hi)), to}
+	ends := [4]float64{from, max(from, min(to, lo)), max(from, min(to, hi)), to}
 	for i := 0; i < 3; i++ {
 		a, b := ends[i], ends[i+1]
 		fa, fb := c.at(a), c.at(b)
@@ -86,7 +86,7 @@ func (c *cubic) turns() (lo, hi float64) {
 	}
 	w := -(c[2] + math.Copysign(math.Sqrt(disc), c[2]))
 	a, b := w/(3*c[3]), c[1]/w
-	return math.Min(a, b), math.Max(a, b)
+	return min(a, b), max(a, b)
 }
 
 // fallingRoot returns the root of a continuous function with f(a) >= 0 >= f(b) to the last digit, by inverse
@@ -120,7 +120,7 @@ func fallingRoot(f func(float64) float64, a, b float64) float64 {
 		if least >= 0.5 {
 			break
 		}
-		share = math.Max(least, math.Min(1-least, interpolate(x1, f1, x2, f2, x3, f3)))
+		share = max(least, min(1-least, interpolate(x1, f1, x2, f2, x3, f3)))
 	}
 	if f1 <= 0 {
 		return x1

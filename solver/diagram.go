@@ -36,7 +36,7 @@ func (p *piece) density(q float64) float64 {
 		return p.kr + y/p.cr
 	}
 	// cr x + d x²/2 = y, the root on the side of the anchor; the larger term is kept out of differences.
-	disc := math.Sqrt(math.Max(0, p.cr*p.cr+2*p.d*y))
+	disc := math.Sqrt(max(0, p.cr*p.cr+2*p.d*y))
 	return p.kr + 2*y/(p.cr+math.Copysign(disc, p.cr))
 }
 
@@ -86,7 +86,7 @@ func (d *diagram) speed(k float64) float64 {
 	if k <= p.hi {
 		return p.cr + 0.5*p.d*k // q/k of the piece through the origin, without the quotient
 	}
-	return math.Max(0, d.flow(k)) / k
+	return max(0, d.flow(k)) / k
 }
 
 func (d *diagram) curved() bool {
@@ -105,7 +105,7 @@ func (d *diagram) freeDensity(q float64) float64 {
 	for i := range d.pieces {
 		p := &d.pieces[i]
 		if p.hi >= d.criticalLo || p.flow(p.hi) >= q {
-			return math.Min(p.hi, math.Max(p.lo, p.density(q)))
+			return min(p.hi, max(p.lo, p.density(q)))
 		}
 	}
 	return d.criticalLo
@@ -118,7 +118,7 @@ func (d *diagram) congestedDensity(q float64) float64 {
 	for i := len(d.pieces) - 1; i >= d.congested; i-- {
 		p := &d.pieces[i]
 		if i == d.congested || p.flow(p.lo) >= q {
-			return math.Min(p.hi, math.Max(p.lo, p.density(q)))
+			return min(p.hi, max(p.lo, p.density(q)))
 		}
 	}
 	return d.criticalHi

@@ -180,7 +180,7 @@ func PiecewiseLinear(corners []FlowPoint) (Relation, error) {
 	}
 	capacity := 0.0
 	for _, c := range corners {
-		capacity = math.Max(capacity, c.Flow)
+		capacity = max(capacity, c.Flow)
 	}
 	pieces := make([]piece, 0, len(corners)-1)
 	for i := 1; i < len(corners); i++ {

@@ -131,7 +131,7 @@ func (p *path) offset(T float64) float64 {
 	c := T * (p.frameJumpFlow + 0.5*T*mD*p.relSpeed*p.relSpeed)
 	// B² - 4AC with the terms that cancel taken out by hand; its root is the jump of density at T.
 	square := jump*jump - 2*T*(jump*mD*p.relSpeed+dm*p.frameJumpFlow) + mU*mD*p.relSpeed*p.relSpeed*T*T
-	root := math.Sqrt(math.Max(0, square))
+	root := math.Sqrt(max(0, square))
 	if b > 0 {
 		return p.frame*T - 2*c/(b+root)
 	}

@@ -1,7 +1,5 @@
 package solver
 
-import "math"
-
 // Front is a shock, contact or edge of the solution, on one segment, from its birth to its end.
 type Front struct {
 	// ID counts from 0 in order of birth.
@@ -34,7 +32,7 @@ func (s *Solution) Fronts() []Front {
 
 func (s *Solution) front(id int32) Front {
 	f := &s.fronts[id]
-	end := math.Min(f.end, s.horizon)
+	end := min(f.end, s.horizon)
 	return Front{
 		ID: int(id), Kind: f.kind, Segment: s.roads[f.seg],
 		Birth: Point{f.x0, f.t0}, End: Point{s.place(f, end), end},
@@ -53,7 +51,7 @@ func (f Front) Position(t float64) float64 { return f.sol.place(f.inner(), f.wit
 func (f Front) Speed(t float64) float64 { return f.sol.velocity(f.inner(), f.within(t)) }
 
 func (f Front) within(t float64) float64 {
-	return math.Max(f.Birth.Time, math.Min(f.End.Time, t))
+	return max(f.Birth.Time, min(f.End.Time, t))
 }
 
 // Sides returns the states just upstream and just downstream of the front at time t, a time of its life.

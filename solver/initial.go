@@ -26,7 +26,7 @@ func (s *Scenario) initialPieces(seg *segment, i int, queues []standingPiece) []
 
 // clip returns the part of the piece within [start, end], ok where there is one.
 func (p ProfilePiece) clip(start, end float64) (ProfilePiece, bool) {
-	a, b := math.Max(p.Start, start), math.Min(p.End, end)
+	a, b := max(p.Start, start), min(p.End, end)
 	if b-a <= samePlace {
 		return ProfilePiece{}, false
 	}
@@ -48,13 +48,13 @@ func (p ProfilePiece) at(x float64) float64 {
 func overlay(background []ProfilePiece, q ProfilePiece) []ProfilePiece {
 	var out []ProfilePiece
 	for _, p := range background {
-		if left, ok := p.clip(p.Start, math.Min(p.End, q.Start)); ok {
+		if left, ok := p.clip(p.Start, min(p.End, q.Start)); ok {
 			out = append(out, left)
 		}
 	}
 	out = append(out, q)
 	for _, p := range background {
-		if right, ok := p.clip(math.Max(p.Start, q.End), p.End); ok {
+		if right, ok := p.clip(max(p.Start, q.End), p.End); ok {
 			out = append(out, right)
 		}
 	}
@@ -90,7 +90,7 @@ func (q StandingQueue) parts(nodes []node, segments []segment) (out []standingPi
 		if q.Length == 0 {
 			length = rest / density
 		}
-		length = math.Min(length, s.end-s.start)
+		length = min(length, s.end-s.start)
 		if length > samePlace {
 			out = append(out, standingPiece{seg, ProfilePiece{s.end - length, s.end, density, density}})
 		}
@@ -119,7 +119,7 @@ func (n *node) heldFlow(segments []segment) float64 {
 	flow := n.restriction.at(0, math.Inf(1)).value
 	for _, seg := range [2]int32{n.upSeg, n.downSeg} {
 		if seg >= 0 {
-			flow = math.Min(flow, segments[seg].diagram.capacity)
+			flow = min(flow, segments[seg].diagram.capacity)
 		}
 	}
 	return flow

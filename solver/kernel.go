@@ -111,7 +111,7 @@ func (k *kernel) run(ctx context.Context, budget Budget) error {
 		if !k.current(e) {
 			continue
 		}
-		k.now = math.Max(k.now, e.time)
+		k.now = max(k.now, e.time)
 		k.interactions++
 		if err := k.check(ctx, budget); err != nil {
 			return err

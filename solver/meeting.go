@@ -48,12 +48,12 @@ func alongIf(r *region, bound int32, s side) side {
 // limit is the time up to which the paths around a region can be followed: a little beyond the horizon, or
 // when the characteristics of a profile involved meet.
 func (k *kernel) limit(b bound, r *region) float64 {
-	t := math.Min(k.horizon*(1+closeness), r.focus())
+	t := min(k.horizon*(1+closeness), r.focus())
 	if b.up >= 0 {
-		t = math.Min(t, k.regions[k.fronts[b.up].up].focus())
+		t = min(t, k.regions[k.fronts[b.up].up].focus())
 	}
 	if b.down >= 0 {
-		t = math.Min(t, k.regions[k.fronts[b.down].down].focus())
+		t = min(t, k.regions[k.fronts[b.down].down].focus())
 	}
 	return t
 }
@@ -88,12 +88,12 @@ func (k *kernel) linesMeet(r *region, b bound, up, down line) float64 {
 	if closing <= 0 {
 		return math.Inf(1)
 	}
-	from := math.Max(up.t0, down.t0)
+	from := max(up.t0, down.t0)
 	gap := down.at(from) - up.at(from)
 	if up.t0 == down.t0 {
 		gap = down.x0 - up.x0
 	}
-	return math.Max(k.now, from+gap/closing)
+	return max(k.now, from+gap/closing)
 }
 
 // labelsMeet: both bounds of a profile are curved shocks. They only ever consume its characteristics, so the
@@ -105,12 +105,12 @@ func (k *kernel) labelsMeet(r *region, up, down int32, limit float64) float64 {
 	if gap(k.now) <= 0 {
 		return k.now
 	}
-	consumed := math.Min(r.focus(), math.Min(k.exhausts(up, downSide, limit), k.exhausts(down, upSide, limit)))
-	limit = math.Min(limit, math.Min(k.exhausts(up, upSide, limit), k.exhausts(down, downSide, limit)))
+	consumed := min(r.focus(), min(k.exhausts(up, downSide, limit), k.exhausts(down, upSide, limit)))
+	limit = min(limit, min(k.exhausts(up, upSide, limit), k.exhausts(down, downSide, limit)))
 	if consumed > limit && gap(limit) > 0 {
 		return math.Inf(1)
 	}
-	return fallingRoot(gap, k.now, math.Min(consumed, limit))
+	return fallingRoot(gap, k.now, min(consumed, limit))
 }
 
 // pathsMeet: two curved shocks with a uniform state between them, whose other sides are profiles. Each one's
@@ -119,7 +119,7 @@ func (k *kernel) labelsMeet(r *region, up, down int32, limit float64) float64 {
 // hold no meeting; the others are halved, earliest first.
 func (k *kernel) pathsMeet(up, down int32, limit float64) float64 {
 	a, b := &k.fronts[up], &k.fronts[down]
-	limit = math.Min(limit, math.Min(k.exhausts(up, upSide, limit), k.exhausts(down, downSide, limit)))
+	limit = min(limit, min(k.exhausts(up, upSide, limit), k.exhausts(down, downSide, limit)))
 	p, q := k.gapAt(a, b, k.now), k.gapAt(a, b, limit)
 	if p.gap <= 0 && p.downSpeed < p.upSpeed {
 		return k.now
@@ -141,11 +141,11 @@ func (k *kernel) firstMeeting(a, b *front, p, q gapState, depth int) float64 {
 		return math.Inf(1) // past the end of one of the paths
 	}
 	h := q.t - p.t
-	slowest := math.Min(p.downSpeed, q.downSpeed) - math.Max(p.upSpeed, q.upSpeed)
-	if p.gap+h*math.Min(0, slowest) > 0 {
+	slowest := min(p.downSpeed, q.downSpeed) - max(p.upSpeed, q.upSpeed)
+	if p.gap+h*min(0, slowest) > 0 {
 		return math.Inf(1)
 	}
-	fastest := math.Max(p.downSpeed, q.downSpeed) - math.Min(p.upSpeed, q.upSpeed)
+	fastest := max(p.downSpeed, q.downSpeed) - min(p.upSpeed, q.upSpeed)
 	if fastest < 0 && q.gap <= 0 {
 		return fallingRoot(func(t float64) float64 { return k.place(b, t) - k.place(a, t) }, p.t, q.t)
 	}

@@ -102,13 +102,13 @@ func (k *kernel) takeIn(n *node) float64 {
 	now := k.now
 	for _, t := range [3]float64{n.due, n.capacity.next(), n.demand.next()} {
 		if t <= until {
-			now = math.Max(now, t)
+			now = max(now, t)
 		}
 	}
 	up, down := n.up, n.down
 	for n.up >= 0 && k.bounds[n.up].due <= until && k.bounds[n.up].up >= 0 {
 		b := k.bounds[n.up]
-		now = math.Max(now, b.due)
+		now = max(now, b.due)
 		gone := n.up
 		n.up = k.fronts[b.up].up
 		k.boundDown(n.up, b.down)
@@ -116,7 +116,7 @@ func (k *kernel) takeIn(n *node) float64 {
 	}
 	for n.down >= 0 && k.bounds[n.down].due <= until && k.bounds[n.down].down >= 0 {
 		b := k.bounds[n.down]
-		now = math.Max(now, b.due)
+		now = max(now, b.due)
 		gone := n.down
 		n.down = k.fronts[b.down].down
 		k.bounds[n.down].up = b.up

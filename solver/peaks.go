@@ -12,7 +12,7 @@ func (q *Queue) peakLength() {
 	slack := closeness * (s.nodes[len(s.nodes)-1].x - s.nodes[0].x)
 	look := func(t, place float64) {
 		if place < lowest-slack || place < lowest+slack && t < at {
-			at, lowest = t, math.Min(place, lowest)
+			at, lowest = t, min(place, lowest)
 		}
 	}
 	for _, p := range q.strips {
@@ -88,7 +88,7 @@ func (q *Queue) eventTimes() []float64 {
 				times = append(times, m.since)
 			}
 		}
-		times = append(times, p.born, math.Min(p.ended, q.End))
+		times = append(times, p.born, min(p.ended, q.End))
 	}
 	sort.Float64s(times)
 	out := times[:1]

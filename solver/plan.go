@@ -8,13 +8,13 @@ import "math"
 func (k *kernel) plan(index int32) {
 	n := &k.nodes[index]
 	n.stamp++
-	n.due = math.Min(k.changeOfGovernor(n), k.cornerReached(n))
+	n.due = min(k.changeOfGovernor(n), k.cornerReached(n))
 	if n.waiting {
-		n.due = math.Min(n.due, k.queueGone(n))
+		n.due = min(n.due, k.queueGone(n))
 	}
 	// Waves sent out by one place less than this apart could not be told from each other.
-	n.due = math.Max(n.due, k.simultaneous())
-	n.due = math.Min(n.due, math.Min(n.capacity.next(), n.demand.next()))
+	n.due = max(n.due, k.simultaneous())
+	n.due = min(n.due, min(n.capacity.next(), n.demand.next()))
 	if n.due <= k.horizon {
 		k.agenda.push(event{time: n.due, target: ^index, stamp: n.stamp})
 	}
@@ -30,7 +30,7 @@ func (k *kernel) changeOfGovernor(n *node) float64 {
 	t := math.Inf(1)
 	for g, other := range all {
 		if Governor(g) != n.governs && !math.IsInf(other.value, 1) {
-			t = math.Min(t, k.overtakes(n, governing, other))
+			t = min(t, k.overtakes(n, governing, other))
 		}
 	}
 	return t
@@ -83,7 +83,7 @@ func (k *kernel) cornerReached(n *node) float64 {
 		if g == n.up {
 			end = r.downLabel
 		}
-		t = math.Min(t, later(k.now+closeness*k.horizon, r.arrival(n.x, end)))
+		t = min(t, later(k.now+closeness*k.horizon, r.arrival(n.x, end)))
 	}
 	return t
 }

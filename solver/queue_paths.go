@@ -16,7 +16,7 @@ func (s *Solution) QueueReaches(node string, x float64) (t float64, ok bool, err
 	first := math.Inf(1)
 	for _, p := range s.stripsOf(i) {
 		for _, part := range s.parts(p, p.tails) {
-			first = math.Min(first, s.reaches(part, x))
+			first = min(first, s.reaches(part, x))
 		}
 	}
 	return first, first <= s.horizon, nil
@@ -52,12 +52,12 @@ type part struct {
 
 // parts lists what an end of the strip is over its life.
 func (s *Solution) parts(p *strip, marks []mark) []part {
-	end := math.Min(p.ended, s.horizon)
+	end := min(p.ended, s.horizon)
 	out := make([]part, 0, len(marks))
 	for i, m := range marks {
 		to := end
 		if i+1 < len(marks) {
-			to = math.Min(end, marks[i+1].since)
+			to = min(end, marks[i+1].since)
 		}
 		if to > m.since {
 			out = append(out, part{m.bound, m.since, to})

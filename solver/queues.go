@@ -61,10 +61,10 @@ func (s *Solution) Queues(node string) ([]Queue, error) {
 	for _, run := range s.episodes(i) {
 		q := Queue{Node: node, Start: run[0].born, sol: s, node: i, strips: run}
 		for _, p := range run {
-			q.End = math.Max(q.End, p.ended)
+			q.End = max(q.End, p.ended)
 		}
 		q.Cleared = q.End <= s.horizon
-		q.End = math.Min(q.End, s.horizon)
+		q.End = min(q.End, s.horizon)
 		q.peakLength()
 		q.peakVehicles()
 		out = append(out, q)
@@ -78,7 +78,7 @@ func (s *Solution) stripsOf(node int) []*strip {
 	set := s.strips()
 	var out []*strip
 	for _, id := range set.byNode[node] {
-		if p := &set.list[id]; math.Min(p.ended, s.horizon)-p.born > closeness*s.horizon {
+		if p := &set.list[id]; min(p.ended, s.horizon)-p.born > closeness*s.horizon {
 			out = append(out, p)
 		}
 	}
@@ -94,7 +94,7 @@ func (s *Solution) episodes(node int) [][]*strip {
 			out = append(out, nil)
 		}
 		out[len(out)-1] = append(out[len(out)-1], p)
-		until = math.Max(until, p.ended)
+		until = max(until, p.ended)
 	}
 	return out
 }
@@ -143,5 +143,5 @@ func (s *Solution) stripAt(p *strip, t float64) Strip {
 	set := s.strips()
 	tail, before := set.end(p.tails, t, true)
 	head, after := set.end(p.heads, t, false)
-	return Strip{Tail: tail, Head: head, Vehicles: math.Max(0, before-after)}
+	return Strip{Tail: tail, Head: head, Vehicles: max(0, before-after)}
 }

@@ -39,8 +39,8 @@ func (g *region) density(x, t float64) float64 {
 		return g.k
 	}
 	k := g.k + xi/g.spread(t)
-	lo, hi := math.Min(g.upLabel, g.downLabel), math.Max(g.upLabel, g.downLabel)
-	return math.Max(lo, math.Min(hi, k))
+	lo, hi := min(g.upLabel, g.downLabel), max(g.upLabel, g.downLabel)
+	return max(lo, min(hi, k))
 }
 
 // waveSpeed of the density k on the region's piece.

@@ -146,7 +146,7 @@ func (k *kernel) fallingWaves(up, down int32, ku, kd float64) {
 	k.waves = k.waves[:0]
 	for i := first; i >= last && i >= 0; i-- {
 		p := &seg.diagram.pieces[i]
-		w := wave{piece: i, hi: math.Min(ku, p.hi), lo: math.Max(kd, p.lo)}
+		w := wave{piece: i, hi: min(ku, p.hi), lo: max(kd, p.lo)}
 		if w.hi-w.lo > seg.densityTolerance {
 			k.waves = append(k.waves, w)
 		}

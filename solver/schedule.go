@@ -3,7 +3,6 @@ package solver
 import (
 	"fmt"
 	"math"
-	"slices"
 	"sort"
 )
 
@@ -38,12 +37,12 @@ func (p *SchedulePiece) rate(t float64) float64 {
 	if p.Slope == 0 {
 		return p.Rate // also where Rate is +Inf
 	}
-	return math.Max(0, p.Rate+p.Slope*(t-p.Start)) // a ramp that ends at 0 may round below it
+	return max(0, p.Rate+p.Slope*(t-p.Start)) // a ramp that ends at 0 may round below it
 }
 
 // during is the integral of piece i from the later of 0 and its start to a time not after its end.
 func (s Schedule) during(i int, until float64) float64 {
-	from := math.Max(0, s[i].Start)
+	from := max(0, s[i].Start)
 	if until <= from {
 		return 0
 	}
@@ -52,22 +51,25 @@ func (s Schedule) during(i int, until float64) float64 {
 
 // span is the part of [0, t] during which piece i holds.
 func (s Schedule) span(i int, t float64) (from, to float64) {
-	from, to = math.Max(0, s[i].Start), t
+	from, to = max(0, s[i].Start), t
 	if i+1 < len(s) {
-		to = math.Min(t, s[i+1].Start)
+		to = min(t, s[i+1].Start)
 	}
 	return from, to
 }
 
 // least is the lesser of two capacities at every time; both are unrestricted before their first piece.
 func least(a, b Schedule) Schedule {
-	if len(a) == 0 || len(b) == 0 {
-		return append(slices.Clone(a), b...)
+	switch {
+	case len(a) == 0:
+		return b
+	case len(b) == 0:
+		return a
 	}
 	var out Schedule
-	for t := math.Min(a[0].Start, b[0].Start); !math.IsInf(t, 1); {
+	for t := min(a[0].Start, b[0].Start); !math.IsInf(t, 1); {
 		la, lb := a.at(t, math.Inf(1)), b.at(t, math.Inf(1))
-		next := math.Min(a.next(t), b.next(t))
+		next := min(a.next(t), b.next(t))
 		if lb.value < la.value || lb.value == la.value && lb.slope < la.slope {
 			la, lb = lb, la
 		}
@@ -104,7 +106,7 @@ func (s Schedule) validate(field string, horizon float64, unlimited bool, v *vio
 		}
 		end := horizon
 		if i+1 < len(s) {
-			end = math.Min(end, s[i+1].Start)
+			end = min(end, s[i+1].Start)
 		}
 		p.validate(at, end, v)
 	}
@@ -125,7 +127,12 @@ func (p *SchedulePiece) validate(at string, end float64, v *violations) {
 
 // schedule turns the plan into the signal's capacity over [0, horizon].
 func (g *Signal) schedule(horizon float64) Schedule {
-	out := Schedule{{Start: math.Inf(-1), Rate: 0}}
+	cycles := 1.0
+	if g.Plan.Cycle > 0 {
+		cycles = horizon/g.Plan.Cycle + 2
+	}
+	out := make(Schedule, 1, 1+2*len(g.Plan.Greens)*int(cycles))
+	out[0] = SchedulePiece{Start: math.Inf(-1)}
 	green := func(start, end float64) {
 		if end <= 0 || start > horizon {
 			return

@@ -133,13 +133,13 @@ func (k *kernel) standingFan(n *node, old int32, s side, label, count float64) (
 	oldLabel := k.labelAt(n, old, s)
 	var w wave
 	if s == upSide {
-		w = wave{piece: d.congested, lo: d.criticalHi, hi: math.Min(oldLabel, d.pieces[d.congested].hi)}
+		w = wave{piece: d.congested, lo: d.criticalHi, hi: min(oldLabel, d.pieces[d.congested].hi)}
 		if label != d.criticalHi {
 			return region{}, false
 		}
 	} else {
 		w.piece = d.pieceBelow(d.criticalLo)
-		w.lo, w.hi = math.Max(oldLabel, d.pieces[w.piece].lo), d.criticalLo
+		w.lo, w.hi = max(oldLabel, d.pieces[w.piece].lo), d.criticalLo
 		if label != d.criticalLo {
 			return region{}, false
 		}

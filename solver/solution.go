@@ -112,10 +112,10 @@ func (s *Solution) state(g int32, x, t float64) State {
 
 func (s *Solution) stateOf(seg int32, piece int, k float64) State {
 	d := s.segments[seg].diagram
-	q := math.Min(d.capacity, math.Max(0, d.pieces[piece].flow(k)))
+	q := min(d.capacity, max(0, d.pieces[piece].flow(k)))
 	speed := d.freeSpeed
 	if k > 0 && piece > 0 {
-		speed = math.Min(speed, q/k)
+		speed = min(speed, q/k)
 	} else {
 		speed = d.speed(k)
 	}

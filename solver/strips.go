@@ -180,7 +180,7 @@ func (set *stripSet) finish() {
 	for g := range set.of {
 		if set.of[g] >= 0 {
 			i := set.root(int32(g))
-			last[i] = math.Max(last[i], set.sol.bounds[g].died)
+			last[i] = max(last[i], set.sol.bounds[g].died)
 		}
 	}
 	for i := range set.list {
@@ -208,7 +208,7 @@ func (set *stripSet) end(marks []mark, t float64, upstream bool) (place, count f
 		return n.x, sol.regions[n.side(n.at(t))].count(n.x, t)
 	}
 	f := &sol.fronts[bound]
-	t = math.Max(f.t0, math.Min(f.end, t))
+	t = max(f.t0, min(f.end, t))
 	place = sol.place(f, t)
 	g := f.down
 	if !upstream {

@@ -74,7 +74,7 @@ func (a *Totals) join(b Totals) {
 // outside adds what waits before the entry or was turned away.
 func (s *Solution) outside(out *CorridorTotals, t, entered float64) {
 	n := &s.nodes[0]
-	excess := math.Max(0, n.demand.total(t)-out.Entered)
+	excess := max(0, n.demand.total(t)-out.Entered)
 	if excess <= closeness*(1+out.Entered) {
 		excess = 0
 	}
@@ -83,7 +83,7 @@ func (s *Solution) outside(out *CorridorTotals, t, entered float64) {
 		return
 	}
 	out.Waiting = excess
-	out.WaitingTime = math.Max(0, n.demand.moment(t)-entered)
+	out.WaitingTime = max(0, n.demand.moment(t)-entered)
 }
 
 // nodeCounts are the counts at the nodes at time t.
@@ -114,7 +114,7 @@ func (s *Solution) nodeMoments(t float64) []float64 {
 			if p.from >= t {
 				break
 			}
-			out[i] += s.timeMoment(n.side(p), n.x, p.from, math.Min(t, s.until(n, j)))
+			out[i] += s.timeMoment(n.side(p), n.x, p.from, min(t, s.until(n, j)))
 		}
 	}
 	return out
@@ -167,7 +167,7 @@ func (s *Solution) placeMoment(seg int32, t float64) float64 {
 	g := s.nodes[seg].at(t).down
 	sum := 0.0
 	for _, f := range s.frontsAt(seg, t) {
-		to := math.Min(s.segments[seg].end, math.Max(x, s.place(f, t)))
+		to := min(s.segments[seg].end, max(x, s.place(f, t)))
 		sum += s.regionMoment(g, x, to, t)
 		x, g = to, f.down
 	}

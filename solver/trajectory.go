@@ -38,7 +38,7 @@ func (l *leg) place(t float64) float64 {
 	}
 	// xi²/(2s) + k xi = r T: the root at which the density, the square root here, is positive.
 	k := l.form.k
-	return l.x + l.form.c*T + 2*passed/(k+math.Sqrt(math.Max(0, k*k+2*passed*l.form.gradient(T))))
+	return l.x + l.form.c*T + 2*passed/(k+math.Sqrt(max(0, k*k+2*passed*l.form.gradient(T))))
 }
 
 // Trajectory follows the vehicle that is at place x at time t until it leaves the corridor or the solved time
@@ -69,7 +69,7 @@ func (tr Trajectory) Position(t float64) float64 {
 	if i == len(tr.legs) {
 		return tr.End.Place
 	}
-	return tr.legs[i].place(math.Max(t, tr.legs[i].t))
+	return tr.legs[i].place(max(t, tr.legs[i].t))
 }
 
 // PassingTime returns when the vehicle passes place x [s]; ok is false where it has not by the end, or started
@@ -87,7 +87,7 @@ func (tr Trajectory) PassingTime(x float64) (t float64, ok bool) {
 		return l.t, true
 	}
 	t = l.meets(line{x0: x, t0: l.t}, l.t, l.end, 0)
-	return math.Min(t, l.end), true
+	return min(t, l.end), true
 }
 
 // Points returns points of the path such that straight lines between them stay within tolerance [m] of it.

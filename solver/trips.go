@@ -55,7 +55,7 @@ func (s *Solution) TravelTime(from, to, departure float64) (TravelTime, error) {
 		out.Arrival, done = tr.End.Time, tr.End.Place
 	}
 	out.Duration = out.Arrival - start
-	out.Delay = out.Duration - s.freeFlow(from, math.Max(from, done))
+	out.Delay = out.Duration - s.freeFlow(from, max(from, done))
 	return out, nil
 }
 
@@ -64,7 +64,7 @@ func (s *Solution) freeFlow(a, b float64) float64 {
 	sum := 0.0
 	for i := range s.segments {
 		seg := &s.segments[i]
-		if length := math.Min(b, seg.end) - math.Max(a, seg.start); length > 0 {
+		if length := min(b, seg.end) - max(a, seg.start); length > 0 {
 			sum += length / seg.diagram.freeSpeed
 		}
 	}
@@ -88,14 +88,14 @@ func (s *Solution) entersAt(t float64) (enters float64, ok bool) {
 	if i == len(n.history) {
 		return s.horizon, false
 	}
-	from := math.Max(t, n.history[i].from)
+	from := max(t, n.history[i].from)
 	return s.countReached(n.history[i].down, n.x, arrived, from, s.until(n, i)), true
 }
 
 // until is the time at which the i-th stretch of the node's history ends.
 func (s *Solution) until(n *node, i int) float64 {
 	if i+1 < len(n.history) {
-		return math.Min(s.horizon, n.history[i+1].from)
+		return min(s.horizon, n.history[i+1].from)
 	}
 	return s.horizon
 }
@@ -109,9 +109,9 @@ func (s *Solution) countReached(g int32, x, count, from, until float64) float64 
 	}
 	label := r.edgeLabel(x, from, r.k)
 	if r.uniform() || math.Abs(r.waveSpeed(label)) <= s.segments[r.seg].speedTolerance {
-		return math.Min(until, from+missing/r.flow(label))
+		return min(until, from+missing/r.flow(label))
 	}
 	form := r.from(x, from)
 	T := combine(cubic{missing, -form.flow()}, rational{}, form.bulge(0, 0)).descent(0, until-from)
-	return math.Min(until, from+T)
+	return min(until, from+T)
 }

@@ -14,16 +14,16 @@ type walker struct {
 func (w *walker) step() leg {
 	s := w.sol
 	l := s.newLeg(w.region, w.x, w.t)
-	died := math.Min(s.bounds[w.region].died, s.horizon)
+	died := min(s.bounds[w.region].died, s.horizon)
 	for {
 		limit, until := s.limitAt(w.region, w.t)
-		until = math.Min(until, died)
+		until = min(until, died)
 		t := s.crossingTime(&l, limit, w.t, until)
 		if !math.IsInf(t, 1) {
 			w.cross(limit, t)
 			break
 		}
-		w.t = math.Max(w.t, until)
+		w.t = max(w.t, until)
 		if w.t >= died {
 			// The horizon, or a vehicle that rode along the bound of a region to the region's end.
 			w.x = l.place(w.t)
@@ -145,11 +145,11 @@ func (l *leg) meets(o line, from, until, slack float64) float64 {
 	}
 	begin := from - l.t
 	if begin > 0 {
-		begin = math.Max(0, begin-slack) // what was found to be still ahead at from may round to just before it
+		begin = max(0, begin-slack) // what was found to be still ahead at from may round to just before it
 	}
 	T := c.descent(begin, until-l.t)
 	if math.IsInf(T, 1) {
 		return T
 	}
-	return math.Max(from, l.t+T)
+	return max(from, l.t+T)
 }
