@@ -14,16 +14,21 @@ type timetable struct {
 	begun    int       // pieces that had begun when the loop last asked
 }
 
-// newTimetable keeps a copy of the schedule. What begins within slack after 0 begins at 0: the first state and
-// such a change are one.
+// newTimetable keeps a copy of the schedule. What begins within slack after 0 begins at 0, and a piece that lasts
+// no longer than slack is left out: nothing could be told from each other in so short a time.
 func newTimetable(s Schedule, before, slack float64) timetable {
-	t := timetable{before: before, schedule: append(Schedule(nil), s...), totals: make([]float64, len(s))}
-	for i := range t.schedule {
-		if start := &t.schedule[i].Start; *start > 0 && *start <= slack {
-			*start = 0
+	t := timetable{before: before, schedule: make(Schedule, 0, len(s))}
+	for i, p := range s {
+		if i+1 < len(s) && s[i+1].Start-p.Start <= slack {
+			continue
 		}
+		if p.Start > 0 && p.Start <= slack {
+			p.Start = 0
+		}
+		t.schedule = append(t.schedule, p)
 	}
-	for i := 1; i < len(s); i++ {
+	t.totals = make([]float64, len(t.schedule))
+	for i := 1; i < len(t.schedule); i++ {
 		t.totals[i] = t.totals[i-1] + t.schedule.during(i-1, t.schedule[i].Start)
 	}
 	return t
