@@ -146,30 +146,32 @@ func newKernel(s *Scenario, l layout) *kernel {
 }
 
 // reserve makes room for what a scenario of this size usually takes, so that the lists need not be copied as
-// they grow: some five fronts for each switch of a node.
+// they grow: by measurement, some three regions and four fronts for each switch of a node.
 func (k *kernel) reserve() {
-	n := 64
+	n := 16
+	curved := false
 	for i := range k.nodes {
-		n += 8 + 5*len(k.nodes[i].restriction)
-		k.nodes[i].history = make([]passage, 0, 8+3*len(k.nodes[i].restriction))
+		switches := len(k.nodes[i].restriction)
+		n += 2 + switches
+		k.nodes[i].history = make([]passage, 0, 4+2*switches)
+	}
+	for i := range k.segments {
+		curved = curved || k.segments[i].diagram.curved()
 	}
 	n = min(n, maxReserve)
-	k.regions = make([]region, 0, n)
-	k.bounds = make([]bound, 0, n)
-	k.fronts = make([]front, 0, n)
-	for i := range k.segments {
-		if k.segments[i].diagram.curved() {
-			k.paths = make([]path, 0, n/4)
-			break
-		}
-	}
-	k.limits = make([]bounding, 0, n+n/2)
-	k.steps = make([]step, 0, n)
+	k.regions = make([]region, 0, 3*n)
+	k.bounds = make([]bound, 0, 3*n)
+	k.fronts = make([]front, 0, 4*n)
+	k.limits = make([]bounding, 0, 5*n)
+	k.steps = make([]step, 0, 4*n)
 	k.agenda = make(agenda, 0, 64)
+	if curved {
+		k.paths = make([]path, 0, 2*n)
+	}
 }
 
 // maxReserve bounds what is reserved before anything is known, to some 30 MB.
-const maxReserve = 1 << 17
+const maxReserve = 1 << 15
 
 // start puts the initial regions of a segment, upstream first, and the waves between them. It returns the
 // count at the segment's end: counts fall downstream by the vehicles in between.

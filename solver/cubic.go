@@ -34,15 +34,11 @@ func (c cubic) descent(from, to float64) float64 {
 
 // roots returns the real roots in [from, to] in order, and their number. A double root may be left out.
 func (c *cubic) roots(from, to float64) (roots [3]float64, n int) {
-	keep := func(T float64) {
-		if T >= from && T <= to {
-			roots[n] = T
-			n++
-		}
-	}
-	switch {
-	case c[3] != 0:
+	if c[3] != 0 {
 		return c.cubicRoots(from, to)
+	}
+	var all [2]float64
+	switch {
 	case c[2] != 0:
 		disc := c[1]*c[1] - 4*c[2]*c[0]
 		if disc < 0 {
@@ -50,10 +46,17 @@ func (c *cubic) roots(from, to float64) (roots [3]float64, n int) {
 		}
 		w := -0.5 * (c[1] + math.Copysign(math.Sqrt(disc), c[1]))
 		a, b := w/c[2], c[0]/w
-		keep(min(a, b))
-		keep(max(a, b))
+		all = [2]float64{min(a, b), max(a, b)}
 	case c[1] != 0:
-		keep(-c[0] / c[1])
+		all = [2]float64{-c[0] / c[1], math.NaN()}
+	default:
+		return roots, 0
+	}
+	for _, T := range all {
+		if T >= from && T <= to {
+			roots[n] = T
+			n++
+		}
 	}
 	return roots, n
 }
@@ -99,7 +102,11 @@ func fallingRoot(f func(float64) float64, a, b float64) float64 {
 	}
 	// x1 is the newest place, x2 the one on the other side of the root, x3 the one before.
 	x1, f1, x2, f2 := b, fb, a, fa
-	share := 0.5
+	// The first step is that of the secant; a function far from straight is halved from then on.
+	share := fb / (fb - fa)
+	if !(share > 0 && share < 1) {
+		share = 0.5
+	}
 	for i := 0; i < 200; i++ {
 		x := x1 + share*(x2-x1)
 		if x == x1 || x == x2 {

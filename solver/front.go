@@ -92,31 +92,37 @@ func newPath(u, d *region, x, t float64, seg *segment) path {
 	return p
 }
 
-// lastsUntil is the first zero of the square of the jump, which is a quadratic in time once multiplied by the
-// spreads of the two sides.
+// lastsUntil is the first zero of the square of the jump, which is linear in time with one uniform side and
+// quadratic with none, once multiplied by the spreads of the two sides.
 func (p *path) lastsUntil() float64 {
 	jump := p.down.k - p.up.k
-	var c cubic
-	switch up, down := p.up.uniform(), p.down.uniform(); {
-	case up:
-		c = cubic{jump * jump * p.down.s, jump*jump*p.down.d - 2*p.frameJumpFlow}
-	case down:
-		c = cubic{jump * jump * p.up.s, jump*jump*p.up.d + 2*p.frameJumpFlow}
-	default:
-		c = cubic{
-			jump * jump * p.up.s * p.down.s,
-			jump*jump*(p.up.s*p.down.d+p.up.d*p.down.s) - 2*(jump*p.relSpeed*p.up.s+p.frameJumpFlow*(p.up.s-p.down.s)),
-			jump*jump*p.up.d*p.down.d - 2*(jump*p.relSpeed*p.up.d+p.frameJumpFlow*(p.up.d-p.down.d)) + p.relSpeed*p.relSpeed,
-		}
-	}
 	if jump == 0 {
 		return math.Inf(1)
 	}
-	roots, n := c.roots(0, math.Inf(1))
-	if n == 0 {
-		return math.Inf(1)
+	square := jump * jump
+	switch up, down := p.up.uniform(), p.down.uniform(); {
+	case up:
+		return positive(square * p.down.s / (2*p.frameJumpFlow - square*p.down.d))
+	case down:
+		return positive(-square * p.up.s / (2*p.frameJumpFlow + square*p.up.d))
 	}
-	return roots[0]
+	c := cubic{
+		square * p.up.s * p.down.s,
+		square*(p.up.s*p.down.d+p.up.d*p.down.s) - 2*(jump*p.relSpeed*p.up.s+p.frameJumpFlow*(p.up.s-p.down.s)),
+		square*p.up.d*p.down.d - 2*(jump*p.relSpeed*p.up.d+p.frameJumpFlow*(p.up.d-p.down.d)) + p.relSpeed*p.relSpeed,
+	}
+	if roots, n := c.roots(0, math.Inf(1)); n > 0 {
+		return roots[0]
+	}
+	return math.Inf(1)
+}
+
+// positive is t, or +Inf where t is not after 0.
+func positive(t float64) float64 {
+	if t > 0 {
+		return t
+	}
+	return math.Inf(1)
 }
 
 // offset is the distance from the place of birth a time T after birth, up to p.until.
