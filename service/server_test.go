@@ -3,6 +3,7 @@ package service
 import (
 	"bytes"
 	"context"
+	"errors"
 	"fmt"
 	"log/slog"
 	"net"
@@ -93,7 +94,7 @@ func TestLogsTellWhatHappenedButNotWhatWasAsked(t *testing.T) {
 			time.Sleep(x.took)
 			return &pb.SolveResponse{Stats: &pb.SolveStats{Interactions: 7}}, x.err
 		})
-		if err != x.err {
+		if !errors.Is(err, x.err) {
 			t.Errorf("%s: the error became %v", x.name, err)
 		}
 		for _, word := range append(x.want, "method=/roadswell.v1.CorridorService/Solve", "took=") {

@@ -103,13 +103,25 @@ func askEverything(t *testing.T, s solver.Scenario, solution *solver.Solution) {
 		if tr, err := solution.Trajectory(x, at); err == nil && math.IsNaN(tr.End.Place+tr.End.Time) {
 			t.Errorf("Trajectory(%g, %g) ends at %+v", x, at, tr.End)
 		}
-		solution.TravelTime(entry, exit, at)
-		solution.Characteristic(x, at)
+		if trip, err := solution.TravelTime(entry, exit, at); err == nil && math.IsNaN(trip.Duration+trip.Delay+trip.WaitOutside) {
+			t.Errorf("TravelTime(%g, %g, %g) = %+v", entry, exit, at, trip)
+		}
+		if c, err := solution.Characteristic(x, at); err == nil && len(c.Points) == 0 {
+			t.Errorf("Characteristic(%g, %g) has no point", x, at)
+		}
 	}
 	for _, n := range solution.Nodes() {
-		solution.Queues(n.Name)
-		solution.QueueAt(n.Name, s.Horizon/2)
-		solution.QueueReaches(n.Name, entry)
+		queues, err := solution.Queues(n.Name)
+		state, errAt := solution.QueueAt(n.Name, s.Horizon/2)
+		_, _, errReach := solution.QueueReaches(n.Name, entry)
+		if err := errors.Join(err, errAt, errReach); err != nil || math.IsNaN(state.Length+state.Vehicles) {
+			t.Errorf("queue of %s: %+v, %v", n.Name, state, err)
+		}
+		for _, q := range queues {
+			if math.IsNaN(q.PeakLength + q.PeakVehicles + q.End) {
+				t.Errorf("queue of %s: %+v", n.Name, q)
+			}
+		}
 	}
 	solution.Fronts()
 }

@@ -219,7 +219,7 @@ func keep(t *testing.T, name string, write func(w io.Writer) error) {
 		if err != nil {
 			t.Fatal(err)
 		}
-		defer f.Close()
+		defer func() { _ = f.Close() }()
 		w = f
 	}
 	if err := write(w); err != nil {
