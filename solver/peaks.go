@@ -57,19 +57,43 @@ func forEachFall(f func(float64) float64, a, b float64, n int, found func(t floa
 // strips their number is smooth; its extremes are at events or where its rate of change falls through zero.
 func (q *Queue) peakVehicles() {
 	times := q.eventTimes()
+	w := watch{strips: q.strips}
 	for i, t := range times {
-		q.offerPeak(t)
+		present := w.at(t)
+		q.offerPeak(t, present)
 		if i+1 < len(times) {
-			q.peakBetween(t, times[i+1])
+			q.peakBetween(t, times[i+1], present)
 		}
 	}
 }
 
+// watch follows which strips are there, for times that do not fall from call to call.
+type watch struct {
+	strips  []*strip // in order of birth
+	born    int      // how many of them
+	present []*strip
+}
+
+// at lists the strips born by time t that have not ended before it.
+func (w *watch) at(t float64) []*strip {
+	for ; w.born < len(w.strips) && w.strips[w.born].born <= t; w.born++ {
+		w.present = append(w.present, w.strips[w.born])
+	}
+	kept := w.present[:0]
+	for _, p := range w.present {
+		if p.ended >= t {
+			kept = append(kept, p)
+		}
+	}
+	w.present = kept
+	return kept
+}
+
 // offerPeak takes the number of vehicles at time t as the peak if it is more than the one found before. A strip
 // that ends at t counts with what it has then.
-func (q *Queue) offerPeak(t float64) {
+func (q *Queue) offerPeak(t float64, present []*strip) {
 	n := 0.0
-	for _, p := range q.strips {
+	for _, p := range present {
 		if p.born <= t && t <= p.ended && !(p.merged >= 0 && t == p.ended) {
 			n += q.sol.stripAt(p, t).Vehicles
 		}
@@ -101,9 +125,9 @@ func (q *Queue) eventTimes() []float64 {
 }
 
 // peakBetween looks at the zeros of the rate of change within a span without events.
-func (q *Queue) peakBetween(a, b float64) {
+func (q *Queue) peakBetween(a, b float64, present []*strip) {
 	var ends []stripEnd
-	for _, p := range q.strips {
+	for _, p := range present {
 		if m := 0.5 * (a + b); p.stands(m) {
 			ends = append(ends, q.sol.endAt(p.tails, m, 1), q.sol.endAt(p.heads, m, -1))
 		}
@@ -122,7 +146,7 @@ func (q *Queue) peakBetween(a, b float64) {
 		}
 		return sum
 	}
-	forEachFall(rate, a, b, turningParts, q.offerPeak)
+	forEachFall(rate, a, b, turningParts, func(t float64) { q.offerPeak(t, present) })
 }
 
 // stripEnd is the tail (sign 1) or head (sign -1) of a strip within a span without events.

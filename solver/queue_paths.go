@@ -88,12 +88,14 @@ func (q Queue) Strips(tolerance float64) []StripPath {
 func (q Queue) TailPoints(tolerance float64) []Point {
 	var outer []part
 	times := q.eventTimes()
+	w := watch{strips: q.strips}
 	for i := 1; i < len(times); i++ {
-		bound, ok := q.outermost(0.5 * (times[i-1] + times[i]))
+		middle := 0.5 * (times[i-1] + times[i])
+		bound, ok := q.sol.outermostTail(w.at(middle), middle)
 		if !ok {
 			continue
 		}
-		if n := len(outer); n > 0 && outer[n-1].bound == bound {
+		if n := len(outer); n > 0 && outer[n-1].bound == bound && outer[n-1].to == times[i-1] {
 			outer[n-1].to = times[i]
 			continue
 		}
@@ -102,21 +104,17 @@ func (q Queue) TailPoints(tolerance float64) []Point {
 	return q.sol.points(outer, tolerance)
 }
 
-// outermost is the front or node that is the most upstream tail at time t. Tails never cross, so it stays that
-// between two events.
-func (q Queue) outermost(t float64) (bound int32, ok bool) {
+// outermostTail is the front or node that is the most upstream tail of the strips at time t. Tails never cross,
+// so it stays that between two events.
+func (s *Solution) outermostTail(present []*strip, t float64) (bound int32, ok bool) {
 	lowest := math.Inf(1)
-	for _, p := range q.strips {
-		if !p.stands(t) {
+	for _, p := range present {
+		if !p.stands(t) || len(p.tails) == 0 {
 			continue
 		}
-		for _, one := range q.sol.parts(p, p.tails) {
-			if one.from > t || one.to < t {
-				continue
-			}
-			if place := q.sol.boundPlace(one.bound, t); place < lowest {
-				lowest, bound, ok = place, one.bound, true
-			}
+		tail := s.endAt(p.tails, t, 1).bound
+		if place := s.boundPlace(tail, t); place < lowest {
+			lowest, bound, ok = place, tail, true
 		}
 	}
 	return bound, ok

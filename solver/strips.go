@@ -191,6 +191,13 @@ func (set *stripSet) finish() {
 		if s.owner < 0 {
 			s.owner = s.segment + 1
 		}
+		// An end that no event ever named is the segment's.
+		if len(s.tails) == 0 {
+			s.mark(&s.tails, s.born, ^s.segment)
+		}
+		if len(s.heads) == 0 {
+			s.mark(&s.heads, s.born, ^(s.segment + 1))
+		}
 		set.byNode[s.owner] = append(set.byNode[s.owner], int32(i))
 	}
 	for _, ids := range set.byNode {
