@@ -25,14 +25,26 @@ func (w *walker) step() leg {
 		}
 		w.t = max(w.t, until)
 		if w.t >= died {
-			// The horizon, or a vehicle that rode along the bound of a region to the region's end.
 			w.x = l.place(w.t)
-			_, w.region, _ = s.locate(w.x, w.t)
+			w.relocate()
 			break
 		}
 	}
 	l.end = w.t
 	return l
+}
+
+// relocate finds the region of a vehicle that is at the horizon, or rode along the bound of a region to the
+// region's end. It looks a hair later, when whatever follows there has begun; should that be the same region, the
+// vehicle has to wait for that hair, so that every step leads on.
+func (w *walker) relocate() {
+	s := w.sol
+	later := min(s.horizon, w.t+closeness*s.horizon)
+	was := w.region
+	_, w.region, _ = s.locate(w.x, later)
+	if w.region == was {
+		w.t = later
+	}
 }
 
 // cross takes the vehicle over a front or node.
