@@ -1,6 +1,7 @@
 package solver
 
 import (
+	"fmt"
 	"math"
 	"sort"
 )
@@ -57,11 +58,18 @@ func (s *Solution) Trajectory(x, t float64) (Trajectory, error) {
 	}
 	w := walker{sol: s, x: x, t: t, region: region}
 	for w.t < s.horizon && !w.left {
+		if len(tr.legs) > s.mostLegs() {
+			return Trajectory{}, fmt.Errorf("solver: fault: the trajectory from (%g, %g) does not end", x, t)
+		}
 		tr.legs = append(tr.legs, w.step())
 	}
 	tr.Left, tr.End = w.left, Point{w.x, w.t}
 	return tr, nil
 }
+
+// mostLegs is more than a trajectory can have: it crosses every front and node at most once, and ends a leg
+// without that at most once for each region.
+func (s *Solution) mostLegs() int { return len(s.fronts) + len(s.nodes) + 2*len(s.regions) + 8 }
 
 // Position returns the vehicle's place at time t [m]; before its start and after its end the place there.
 func (tr Trajectory) Position(t float64) float64 {
