@@ -83,7 +83,7 @@ func Dial(address string, opts ...Option) (*Client, error) {
 		return nil, fmt.Errorf("roadswell: timeout %s and answer size %d must be more than 0", s.timeout, s.answerBytes)
 	}
 	if s.credentials == nil && s.dialer == nil && !isLoopback(address) {
-		return nil, fmt.Errorf("roadswell: %q is not a loopback address (such as %s); use WithCredentials to reach other machines", address, DefaultAddress)
+		return nil, fmt.Errorf("roadswell: %q is not a loopback address with a port (such as %s); use WithCredentials to reach other machines", address, DefaultAddress)
 	}
 	conn, err := grpc.NewClient(target(address, s), s.dialOptions()...)
 	if err != nil {

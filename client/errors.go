@@ -36,7 +36,8 @@ type Error struct {
 	Message string
 	// Metadata are further facts by name, such as "node" and "time_s"; may be nil.
 	Metadata map[string]string
-	// Fields are the fields that cannot be accepted, in the order of the request; none unless Reason is INVALID_REQUEST.
+	// Fields are the fields that cannot be accepted, each named once, in no particular order; none unless Reason is
+	// INVALID_REQUEST.
 	Fields []*FieldError
 
 	status *status.Status

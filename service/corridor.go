@@ -61,6 +61,9 @@ func check(req *pb.SolveRequest, limits Limits) (solver.Scenario, *violations) {
 	c := converter{request: req, bad: bad}
 	scenario := c.scenario()
 	checkQuestions(req, limits, bad)
+	if !bad.empty() { // else the names are checked against the corridor once it is built
+		checkNodes(req, possibleNodes(req.GetScenario()), bad)
+	}
 	return scenario, bad
 }
 
@@ -72,7 +75,8 @@ func (c *Corridor) respond(ctx context.Context, req *pb.SolveRequest, scenario s
 		Stats:       stats(solution.Stats()),
 		Advisory:    Advisory,
 	}
-	if bad := checkNodes(req, out.Corridor); !bad.empty() {
+	bad := &violations{}
+	if checkNodes(req, namesOf(out.Corridor.GetNodes()), bad); !bad.empty() {
 		return nil, invalid(bad)
 	}
 	a := answerer{ctx: ctx, request: req, solution: solution, corridor: out.Corridor, most: c.limits.AnswerBytes}
@@ -89,42 +93,6 @@ func (c *Corridor) respond(ctx context.Context, req *pb.SolveRequest, scenario s
 		return nil, notFinite(broken)
 	}
 	return out, nil
-}
-
-// checkNodes refuses names of nodes that the corridor does not have. It comes after the solve because the solver
-// decides which joins there are.
-func checkNodes(req *pb.SolveRequest, corridor *pb.Corridor) *violations {
-	known := map[string]bool{}
-	for _, n := range corridor.GetNodes() {
-		known[n.GetName()] = true
-	}
-	bad := &violations{}
-	for i, q := range req.GetQuestions() {
-		for j, name := range q.GetQueues().GetNodes() {
-			if !known[name] {
-				bad.add(fmt.Sprintf("questions[%d].queues.nodes[%d]", i, j), pb.FieldReason_FIELD_REASON_UNKNOWN,
-					printText(name), "a node of the corridor: "+nodeNames(corridor))
-			}
-		}
-	}
-	return bad
-}
-
-// namesListed is how many names an error quotes.
-const namesListed = 8
-
-func nodeNames(corridor *pb.Corridor) string {
-	text := ""
-	for i, n := range corridor.GetNodes() {
-		if i == namesListed {
-			return text + ", ..."
-		}
-		if i > 0 {
-			text += ", "
-		}
-		text += printText(n.GetName())
-	}
-	return text
 }
 
 var nodeKinds = map[solver.NodeKind]pb.NodeKind{

@@ -27,11 +27,8 @@ type questionChecker struct {
 // checkQuestions reports all that is wrong with the questions. Node names are checked after the solve.
 func checkQuestions(req *pb.SolveRequest, limits Limits, bad *violations) {
 	s := req.GetScenario()
-	c := questionChecker{bad: bad, entry: s.GetOriginM(), horizon: s.GetHorizonS()}
-	c.exit = c.entry
-	for _, seg := range s.GetSegments() {
-		c.exit += seg.GetLengthM()
-	}
+	c := questionChecker{bad: bad, horizon: s.GetHorizonS()}
+	c.corridor(s)
 	c.text(s.GetTitle(), "scenario.title")
 	c.forgive()
 	for i, q := range req.GetQuestions() {
@@ -40,8 +37,17 @@ func checkQuestions(req *pb.SolveRequest, limits Limits, bad *violations) {
 		c.question(q, s, field)
 	}
 	if c.items > limits.Items {
-		bad.add("questions", pb.FieldReason_FIELD_REASON_LIMIT, fmt.Sprintf("%d points, departures and the like", c.items),
-			fmt.Sprintf("at most %d in one call", limits.Items))
+		bad.add("questions", pb.FieldReason_FIELD_REASON_LIMIT, "",
+			fmt.Sprintf("at most %d points, departures and the like in one call; these ask for %d", limits.Items, c.items))
+	}
+}
+
+// corridor measures how far the road reaches.
+func (c *questionChecker) corridor(s *pb.Scenario) {
+	c.entry = s.GetOriginM()
+	c.exit = c.entry
+	for _, seg := range s.GetSegments() {
+		c.exit += seg.GetLengthM()
 	}
 }
 

@@ -38,7 +38,7 @@ var fieldCases = []struct {
 	{"no scenario", `{}`, "scenario", "REQUIRED", nil},
 	{"no segment", `{"scenario": {"horizon_s": 60}}`, "scenario.segments", "REQUIRED", nil},
 	{"no horizon", `{"scenario": {` + goodRoad + `}}`, "scenario.horizon_s", "POSITIVE", []string{"is 0"}},
-	{"length below zero", scenario(`"segments": [{"length_m": -3, "relation": {"greenshields": {"free_speed_km_per_h": 72, "jam_density_veh_per_km": 100}}}]`), "scenario.segments[0].length_m", "RANGE", []string{"is -3"}},
+	{"length below zero", scenario(`"segments": [{"length_m": -3, "relation": {"greenshields": {"free_speed_km_per_h": 72, "jam_density_veh_per_km": 100}}}]`), "scenario.segments[0].length_m", "RANGE", []string{"is -3", "between 0.01 m and 10000000 m"}},
 	{"length not a number", scenario(`"segments": [{"length_m": "NaN", "relation": {"greenshields": {"free_speed_km_per_h": 72, "jam_density_veh_per_km": 100}}}]`), "scenario.segments[0].length_m", "FINITE", []string{"is NaN"}},
 	{"infinite flow is no way to say unrestricted", onRoad(`"bottlenecks": [{"name": "b", "place_m": 500, "capacity": [{"flow_veh_per_h": "Infinity"}]}]`), "scenario.bottlenecks[0].capacity[0].flow_veh_per_h", "FINITE", []string{"is +Inf"}},
 	{"no relation", segment(`"lanes": 2`), "scenario.segments[0].relation", "REQUIRED", nil},
@@ -54,7 +54,7 @@ var fieldCases = []struct {
 	{"a critical speed too low", segment(`"relation": {"quadratic_free": {"free_speed_km_per_h": 72, "critical_speed_km_per_h": 30, "critical_density_veh_per_km": 30, "jam_density_veh_per_km": 120}}`), "scenario.segments[0].relation.quadratic_free.critical_speed_km_per_h", "CONCAVE", []string{"is 30", "36"}},
 	{"two bottlenecks of one name", onRoad(`"bottlenecks": [{"name": "b", "place_m": 300, "capacity": [{"flow_veh_per_h": 600}]}, {"name": "b", "place_m": 500, "capacity": [{"flow_veh_per_h": 600}]}]`), "scenario.bottlenecks[1].name", "UNIQUE", []string{`is "b"`}},
 	{"the name of an end", onRoad(`"bottlenecks": [{"name": "exit", "place_m": 300, "capacity": [{"flow_veh_per_h": 600}]}]`), "scenario.bottlenecks[0].name", "UNIQUE", []string{`is "exit"`}},
-	{"a bottleneck beyond the exit", onRoad(`"bottlenecks": [{"name": "b", "place_m": 1300, "capacity": [{"flow_veh_per_h": 600}]}]`), "scenario.bottlenecks[0].place_m", "RANGE", []string{"is 1300", "1000"}},
+	{"a bottleneck beyond the exit", onRoad(`"bottlenecks": [{"name": "b", "place_m": 1300, "capacity": [{"flow_veh_per_h": 600}]}]`), "scenario.bottlenecks[0].place_m", "RANGE", []string{"is 1300", "from 0 m to 1000 m"}},
 	{"a bottleneck that restricts nothing", onRoad(`"bottlenecks": [{"name": "b", "place_m": 300}]`), "scenario.bottlenecks[0].capacity", "REQUIRED", nil},
 	{"a step that says neither", onRoad(`"bottlenecks": [{"name": "b", "place_m": 300, "capacity": [{"start_s": 5}]}]`), "scenario.bottlenecks[0].capacity[0]", "REQUIRED", []string{"unrestricted"}},
 	{"not unrestricted", onRoad(`"bottlenecks": [{"name": "b", "place_m": 300, "capacity": [{"unrestricted": false}]}]`), "scenario.bottlenecks[0].capacity[0].unrestricted", "RANGE", []string{"is false"}},
@@ -65,7 +65,7 @@ var fieldCases = []struct {
 	{"steps out of order", onRoad(`"entry": {"demand": [{"start_s": 60, "flow_veh_per_h": 600}, {"start_s": 30, "flow_veh_per_h": 600}]}`), "scenario.entry.demand[1].start_s", "ORDER", []string{"is 30", "60"}},
 	{"a signal without a plan", onRoad(`"signals": [{"name": "s", "place_m": 300}]`), "scenario.signals[0]", "REQUIRED", []string{"cycle or windows"}},
 	{"a cycle of no length", onRoad(`"signals": [{"name": "s", "place_m": 300, "cycle": {"greens": [{"end_s": 10}]}}]`), "scenario.signals[0].cycle.cycle_s", "POSITIVE", []string{"is 0"}},
-	{"a green beyond the cycle", onRoad(`"signals": [{"name": "s", "place_m": 300, "cycle": {"cycle_s": 60, "greens": [{"start_s": 50, "end_s": 70}]}}]`), "scenario.signals[0].cycle.greens[0]", "RANGE", []string{"60"}},
+	{"a green beyond the cycle", onRoad(`"signals": [{"name": "s", "place_m": 300, "cycle": {"cycle_s": 60, "greens": [{"start_s": 50, "end_s": 70}]}}]`), "scenario.signals[0].cycle.greens[0].end_s", "RANGE", []string{"is 70", "60 s", "in two"}},
 	{"a green that ends before it starts", onRoad(`"signals": [{"name": "s", "place_m": 300, "windows": {"greens": [{"start_s": 50, "end_s": 40}]}}]`), "scenario.signals[0].windows.greens[0].end_s", "ORDER", []string{"is 40", "50"}},
 	{"no saturation flow at all", onRoad(`"signals": [{"name": "s", "place_m": 300, "saturation_flow_veh_per_h": 0, "windows": {}}]`), "scenario.signals[0].saturation_flow_veh_per_h", "POSITIVE", []string{"is 0"}},
 	{"an unknown fate", onRoad(`"entry": {"excess": 7}`), "scenario.entry.excess", "UNKNOWN", []string{"is 7"}},
@@ -73,7 +73,7 @@ var fieldCases = []struct {
 	{"denser than a jam", onRoad(`"initial": {"profile": [{"start_m": 0, "end_m": 1000, "start_density_veh_per_km": 126}]}`), "scenario.initial.profile[0].start_density_veh_per_km", "RANGE", []string{"is 126", "125"}},
 	{"a background beyond capacity", onRoad(`"initial": {"background_flow_veh_per_h": 1801}`), "scenario.initial.background_flow_veh_per_h", "RANGE", []string{"is 1801", "1800"}},
 	{"both backgrounds", onRoad(`"initial": {"background_flow_veh_per_h": 5, "profile": [{"start_m": 0, "end_m": 1000}]}`), "scenario.initial.background_flow_veh_per_h", "CONFLICT", nil},
-	{"a queue behind nothing", onRoad(`"initial": {"standing_queues": [{"node": "mole", "vehicles": 5}]}`), "scenario.initial.standing_queues[0].node", "UNKNOWN", []string{`is "mole"`}},
+	{"a queue behind nothing", onRoad(`"initial": {"standing_queues": [{"node": "mole", "vehicles": 5}]}`), "scenario.initial.standing_queues[0].node", "UNKNOWN", []string{`is "mole"`, `"exit"`}},
 	{"a queue of no size", onRoad(`"initial": {"standing_queues": [{"node": "exit"}]}`), "scenario.initial.standing_queues[0]", "REQUIRED", []string{"vehicles or length_m"}},
 	{"a queue that does not fit", onRoad(`"bottlenecks": [{"name": "b", "place_m": 500, "capacity": [{"flow_veh_per_h": 0}]}], "initial": {"standing_queues": [{"node": "b", "length_m": 501}]}`), "scenario.initial.standing_queues[0].length_m", "FITS", []string{"is 501", "fits"}},
 	{"a sloped demand on a curved relation", scenario(curvedRoad + `, "entry": {"demand": [{"flow_veh_per_h": 100, "end_flow_veh_per_h": 200}]}`), "scenario.entry.demand", "CLOSED_FORM", []string{"steps"}},
@@ -124,8 +124,9 @@ func TestEverythingWrongIsReportedAtOnce(t *testing.T) {
 		"segments": [{"length_m": 100, "relation": {"greenshields": {"free_speed_km_per_h": -1, "jam_density_veh_per_km": 0}}}],
 		"signals": [{"name": "s", "place_m": 50, "cycle": {}}],
 		"bottlenecks": [{"place_m": 60, "capacity": [{"flow_veh_per_h": -5}]}],
+		"initial": {"standing_queues": [{"node": "mole", "vehicles": 3}]},
 		"horizon_s": "Infinity"
-	}, "questions": [{"states": {"points": [{"place_m": 101}]}}, {}]}`))
+	}, "questions": [{"states": {"points": [{"place_m": 101}]}}, {}, {"queues": {"nodes": ["s", "mole"]}}]}`))
 	var refused *client.Error
 	if !errors.As(err, &refused) {
 		t.Fatalf("not refused: %v", err)
@@ -143,6 +144,8 @@ func TestEverythingWrongIsReportedAtOnce(t *testing.T) {
 		"scenario.horizon_s":                                                "FINITE",
 		"questions[0].states.points[0].place_m":                             "RANGE",
 		"questions[1]":                                                      "REQUIRED",
+		"scenario.initial.standing_queues[0].node":                          "UNKNOWN",
+		"questions[2].queues.nodes[1]":                                      "UNKNOWN",
 	} {
 		if got[field] != reason {
 			t.Errorf("%s is refused for %q, want %q; all: %v", field, got[field], reason, got)

@@ -62,6 +62,7 @@ func (c *converter) bottlenecks(in []*pb.Bottleneck) []solver.Bottleneck {
 	for i, b := range in {
 		field := fmt.Sprintf("scenario.bottlenecks[%d]", i)
 		c.nodeName(b.GetName(), field)
+		c.inCorridor(b.GetPlaceM(), field)
 		if len(b.GetCapacity()) == 0 {
 			c.bad.required(field+".capacity", "at least one step")
 		}
@@ -77,11 +78,26 @@ func (c *converter) nodeName(name, field string) {
 	}
 }
 
+// samePlaceM is within which the solver takes two places for one (package solver, Conventions), m: a bottleneck at an
+// exit whose place is a sum of lengths must not fall off the road by a rounding.
+const samePlaceM = 1e-6
+
+// inCorridor keeps bottlenecks and signals on the road, where it is known how far that reaches.
+func (c *converter) inCorridor(place float64, field string) {
+	on := questionChecker{bad: c.bad}
+	on.corridor(c.request.GetScenario())
+	on.forgive()
+	if isFinite(place) && (place < on.entry-samePlaceM || place > on.exit+samePlaceM) {
+		on.place(place, field+".place_m")
+	}
+}
+
 func (c *converter) signals(in []*pb.Signal) []solver.Signal {
 	out := make([]solver.Signal, len(in))
 	for i, s := range in {
 		field := fmt.Sprintf("scenario.signals[%d]", i)
 		c.nodeName(s.GetName(), field)
+		c.inCorridor(s.GetPlaceM(), field)
 		flow := math.Inf(1)
 		if s.SaturationFlowVehPerH != nil {
 			flow = flowToSI(s.GetSaturationFlowVehPerH())
@@ -101,12 +117,23 @@ func (c *converter) plan(s *pb.Signal, field string) solver.Plan {
 		if p.Cycle.GetCycleS() == 0 { // to the solver, no cycle at all
 			c.bad.add(field+".cycle.cycle_s", pb.FieldReason_FIELD_REASON_POSITIVE, "0", "more than 0")
 		}
+		c.withinCycle(p.Cycle, field+".cycle")
 		return solver.Plan{Cycle: p.Cycle.GetCycleS(), Offset: p.Cycle.GetOffsetS(), Greens: windows(p.Cycle.GetGreens())}
 	case *pb.Signal_Windows:
 		return solver.Plan{Greens: windows(p.Windows.GetGreens())}
 	}
 	c.bad.required(field, "a plan: cycle or windows")
 	return solver.Plan{}
+}
+
+// withinCycle says how to give a green that runs over the end of the cycle.
+func (c *converter) withinCycle(p *pb.CyclePlan, field string) {
+	for i, w := range p.GetGreens() {
+		if end := w.GetEndS(); p.GetCycleS() > 0 && end > p.GetCycleS() && isFinite(end) {
+			c.bad.add(fmt.Sprintf("%s.greens[%d].end_s", field, i), pb.FieldReason_FIELD_REASON_RANGE, printNumber(end),
+				fmt.Sprintf("at most the cycle length, %g s; split a green that runs over the end of the cycle in two, or shift the offset", p.GetCycleS()))
+		}
+	}
 }
 
 func windows(in []*pb.GreenWindow) []solver.Window {
@@ -148,8 +175,11 @@ func (c *converter) initial(in *pb.InitialTraffic) solver.Initial {
 			StartDensity: densityToSI(p.GetStartDensityVehPerKm()), EndDensity: densityToSI(end),
 		})
 	}
+	names := possibleNodes(c.request.GetScenario())[1:] // no queue stands on the road behind the entry
 	for i, q := range in.GetStandingQueues() {
-		out.Queues = append(out.Queues, c.standingQueue(q, fmt.Sprintf("%s.standing_queues[%d]", field, i)))
+		at := fmt.Sprintf("%s.standing_queues[%d]", field, i)
+		c.standingNode(q.GetNode(), names, at)
+		out.Queues = append(out.Queues, c.standingQueue(q, at))
 	}
 	return out
 }

@@ -1,6 +1,7 @@
 package service
 
 import (
+	"fmt"
 	"regexp"
 	"strconv"
 	"strings"
@@ -26,6 +27,9 @@ var conversions = map[string]struct {
 // inContractUnits rewrites the quantities in a text of the solver, such as "at most 0.15 veh/m". Numbers without a
 // unit are taken to be in that of the field that the text is about.
 func inContractUnits(text, field string) string {
+	if text, done := withSharedUnit(text, field); done {
+		return text
+	}
 	bare := unitOf(field)
 	return quantity.ReplaceAllStringFunc(text, func(found string) string {
 		parts := quantity.FindStringSubmatch(found)
@@ -40,6 +44,23 @@ func inContractUnits(text, field string) string {
 		}
 		return parts[1] + printShort(c.convert(x)) + c.unit + parts[4]
 	})
+}
+
+var bareRange = regexp.MustCompile(`^between ([^ ]+) and ([^ ]+)$`)
+
+// withSharedUnit adds the unit to a range of places or times, which are the same on both sides.
+func withSharedUnit(text, field string) (string, bool) {
+	ends := bareRange.FindStringSubmatch(text)
+	unit := field[strings.LastIndexByte(field, '_')+1:]
+	if ends == nil || (unit != "m" && unit != "s") {
+		return text, false
+	}
+	for i, end := range ends {
+		if x, err := strconv.ParseFloat(end, 64); err == nil {
+			ends[i] = strconv.FormatFloat(x, 'f', -1, 64)
+		}
+	}
+	return fmt.Sprintf("between %s %s and %s %s", ends[1], unit, ends[2], unit), true
 }
 
 // unitOf is the solver's unit of a field of the contract; "" where it is the same as the contract's.

@@ -32,12 +32,12 @@ func ExampleDiagram_WriteSVG() {
 		fmt.Println(err)
 		return
 	}
-	for _, words := range []string{"Red at stop line", "Tail of queue from Mill Street", "Shock"} {
+	for _, words := range []string{"Red at stop line", "Tail of queue at Mill Street", "Shock"} {
 		fmt.Printf("%s: %t\n", words, strings.Contains(file.String(), ">"+words+"<"))
 	}
 	// Output:
 	// Red at stop line: true
-	// Tail of queue from Mill Street: true
+	// Tail of queue at Mill Street: true
 	// Shock: false
 }
 

@@ -58,7 +58,7 @@ func (s strokes) entry() string { return s.name }
 
 func (s strokes) swatch(c draw.Canvas) {
 	y := c.Center().Y
-	s.style.draw(c, []vg.Point{{X: c.Min.X, Y: y}, {X: c.Max.X, Y: y}})
+	s.style.faded(len(s.paths)).draw(c, []vg.Point{{X: c.Min.X, Y: y}, {X: c.Max.X, Y: y}})
 }
 
 // casings draws what lies under lines. It is a layer of its own below all of them, so that
@@ -125,5 +125,5 @@ func (d Diagram) tailName() string {
 	if len(d.Tails) == 0 {
 		return "Tail of queue"
 	}
-	return "Tail of queue from " + d.Tails[0].Node
+	return "Tail of queue at " + d.Tails[0].Node
 }

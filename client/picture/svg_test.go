@@ -137,7 +137,7 @@ func TestLegendListsEverythingOnce(t *testing.T) {
 }
 
 var legendWords = []string{
-	"Shock", "Contact", "Fan edge", "Tail of queue from Gate", "Vehicle trajectory",
+	"Shock", "Contact", "Fan edge", "Tail of queue at Gate", "Vehicle trajectory",
 	"Red at stop line", "Reduced capacity", "Closed",
 }
 

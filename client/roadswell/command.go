@@ -1,9 +1,12 @@
 package main
 
 import (
+	"bytes"
 	"context"
+	"encoding/json"
 	"fmt"
 	"io"
+	"math"
 	"os"
 	"path/filepath"
 	"runtime/debug"
@@ -13,7 +16,6 @@ import (
 	"github.com/spf13/cobra"
 	"google.golang.org/protobuf/encoding/protojson"
 
-	"github.com/roadswell/roadswell/client"
 	pb "github.com/roadswell/roadswell/proto/roadswell/v1"
 )
 
@@ -32,12 +34,13 @@ func newCommand(in io.Reader, out io.Writer) *cobra.Command {
 		Use:           "roadswell",
 		Short:         "Exact kinematic-wave forecasts for a traffic corridor",
 		Long:          "Exact kinematic-wave forecasts for a traffic corridor: queues, travel times, totals and a time-space picture.\nForecasts are advisory; local codes and licensed engineers take precedence.",
+		Version:       version(),
 		SilenceUsage:  true,
 		SilenceErrors: true,
-		Args:          cobra.NoArgs,
 	}
 	root.SetIn(in)
 	root.SetOut(out)
+	root.SetVersionTemplate("roadswell {{.Version}}\n")
 	root.AddCommand(solveCommand(), versionCommand())
 	return root
 }
@@ -50,19 +53,27 @@ func solveCommand() *cobra.Command {
 		Long: "Solve the scenario in FILE (the JSON form of roadswell.v1.SolveRequest; - reads standard input) and report\n" +
 			"queues, travel times and totals, then the answers to the file's own questions.",
 		Example: "  roadswell solve corridor.json\n  roadswell solve corridor.json --picture corridor.svg --every 5m",
-		Args:    cobra.ExactArgs(1),
+		Args:    oneFile,
 		RunE: func(c *cobra.Command, args []string) error {
 			o.file = args[0]
 			return solve(c.Context(), o, c.InOrStdin(), c.OutOrStdout())
 		},
 	}
 	f := c.Flags()
-	f.StringVar(&o.server, "server", "", "`address` of a server; without it one inside this program answers")
+	f.StringVar(&o.server, "server", "", "`address` of a server on this machine, such as 127.0.0.1:7460; without it one inside this program answers")
 	f.StringArrayVar(&o.pictures, "picture", nil, "draw the time-space diagram to this .svg or .png `file` (repeatable)")
-	f.DurationVar(&o.every, "every", 0, "`time` between the departures whose travel times are reported (default: a dozen departures)")
+	f.DurationVar(&o.every, "every", 0, "`time`, such as 5m, between the departures whose travel times are reported (default: about a dozen departures)")
 	f.BoolVar(&o.asJSON, "json", false, "print the server's response as JSON in place of the report")
 	f.DurationVar(&o.timeout, "timeout", time.Minute, "give up after this `time`")
 	return c
+}
+
+// oneFile is the rule for the arguments of "solve".
+func oneFile(_ *cobra.Command, args []string) error {
+	if len(args) != 1 {
+		return fmt.Errorf("solve: %d files given; expected: one, see roadswell solve --help", len(args))
+	}
+	return nil
 }
 
 func versionCommand() *cobra.Command {
@@ -88,8 +99,11 @@ func solve(ctx context.Context, o solveOptions, in io.Reader, out io.Writer) err
 	if err := o.check(); err != nil {
 		return err
 	}
-	request, err := readRequest(o.file, in)
+	file, err := readScenario(o.file, in)
 	if err != nil {
+		return err
+	}
+	if err := o.checkEvery(file.request.GetScenario().GetHorizonS()); err != nil {
 		return err
 	}
 	c, closeAll, err := connect(o.server)
@@ -99,10 +113,10 @@ func solve(ctx context.Context, o solveOptions, in io.Reader, out io.Writer) err
 	defer closeAll()
 	ctx, cancel := context.WithTimeout(ctx, o.timeout)
 	defer cancel()
-	a := newInquiry(request, o)
+	a := newInquiry(file, o)
 	response, err := c.Solve(ctx, a.request)
 	if err != nil {
-		return explain(o, err)
+		return explain(o, file, err)
 	}
 	if err := a.print(out, response, o.asJSON); err != nil {
 		return err
@@ -126,6 +140,18 @@ func (o solveOptions) check() error {
 	return nil
 }
 
+// mostDepartures bounds the departures that --every leads to.
+const mostDepartures = 10_000
+
+// checkEvery refuses departures that are too close for the horizon, s.
+func (o solveOptions) checkEvery(horizon float64) error {
+	if o.every > 0 && horizon/o.every.Seconds() > mostDepartures && !math.IsInf(horizon, 0) { // the server refuses that
+		return fmt.Errorf("--every is %s; expected: at least %.6gs, because at most %s departures are reported and the horizon is %.6g s",
+			o.every, math.Ceil(horizon/mostDepartures), grouped(mostDepartures, 0), horizon)
+	}
+	return nil
+}
+
 // printJSON prints the response with the answers to the file's questions, or to the program's own where the file
 // asks nothing.
 func (a inquiry) printJSON(out io.Writer, response *pb.SolveResponse) error {
@@ -133,49 +159,19 @@ func (a inquiry) printJSON(out io.Writer, response *pb.SolveResponse) error {
 	if a.asked == 0 {
 		answers = response.GetAnswers()[:reportQuestions]
 	}
-	text, err := protojson.MarshalOptions{Multiline: true, Indent: "  ", EmitUnpopulated: false, UseProtoNames: true}.Marshal(&pb.SolveResponse{
+	text, err := protojson.MarshalOptions{EmitDefaultValues: true, UseProtoNames: true}.Marshal(&pb.SolveResponse{
 		Answers: answers, Certificate: response.GetCertificate(), Corridor: response.GetCorridor(),
 		Stats: response.GetStats(), Advisory: response.GetAdvisory(),
 	})
 	if err != nil {
 		return err
 	}
-	_, err = fmt.Fprintf(out, "%s\n", text)
-	return err
-}
-
-// explain puts the file's name before what the server says about its fields.
-func explain(o solveOptions, err error) error {
-	var refused *client.Error
-	if !asError(err, &refused) {
+	var pretty bytes.Buffer // laid out anew, because the encoder varies its spaces from build to build
+	if err := json.Indent(&pretty, text, "", "  "); err != nil {
 		return err
 	}
-	if len(refused.Fields) == 0 {
-		return fmt.Errorf("%s: %s", o.source(refused), refused.Message)
-	}
-	lines := make([]string, 0, len(refused.Fields)+1)
-	for _, f := range refused.Fields {
-		lines = append(lines, fmt.Sprintf("%s: %s %s", fileName(o.file), f.Field, f.Description))
-	}
-	if n := refused.Metadata["fields_not_listed"]; n != "" {
-		lines = append(lines, fmt.Sprintf("%s: and %s more", fileName(o.file), n))
-	}
-	return fmt.Errorf("%s", strings.Join(lines, "\n"))
-}
-
-// source is what an error without fields is about: the file where the server refuses it, else the server.
-func (o solveOptions) source(e *client.Error) string {
-	if e.Reason != "" || o.server == "" {
-		return fileName(o.file)
-	}
-	return o.server
-}
-
-func fileName(name string) string {
-	if name == "-" {
-		return "standard input"
-	}
-	return name
+	_, err = fmt.Fprintf(out, "%s\n", pretty.Bytes())
+	return err
 }
 
 // create writes a file through write; a file that could not be finished is removed.

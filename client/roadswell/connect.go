@@ -2,6 +2,7 @@ package main
 
 import (
 	"context"
+	"fmt"
 	"log/slog"
 	"net"
 	"os"
@@ -22,7 +23,8 @@ func connect(address string) (*client.Client, func(), error) {
 	if address != "" {
 		c, err := client.Dial(address)
 		if err != nil {
-			return nil, nil, err
+			return nil, nil, fmt.Errorf("--server is %q; expected: a loopback address with a port, such as %s (this version speaks plaintext and calls no other machine)",
+				address, client.DefaultAddress)
 		}
 		return c, func() { _ = c.Close() }, nil
 	}

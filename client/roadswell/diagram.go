@@ -37,23 +37,37 @@ func diagram(a inquiry, response *pb.SolveResponse) picture.Diagram {
 	if d.Title == "" {
 		d.Title = a.file
 	}
-	d.Subtitle = fmt.Sprintf("%s, %d wave interactions", certificateText(response.GetCertificate()), response.GetStats().GetInteractions())
+	d.Subtitle = fmt.Sprintf("%s, %s", certificateText(response.GetCertificate()), many(int(response.GetStats().GetInteractions()), "wave interaction"))
 	d.Density = field(a.own(response, gridQuestion).GetGrid(), c)
 	d.Fronts = fronts(a.own(response, frontsQuestion).GetFronts())
 	d.Tails = tails(a.own(response, queuesQuestion).GetQueues())
 	for _, t := range a.own(response, trajectoriesQuestion).GetTrajectories().GetTrajectories() {
-		d.Trajectories = append(d.Trajectories, line(t.GetPath()))
+		if !onEmptyRoad(d, t.GetStart()) {
+			d.Trajectories = append(d.Trajectories, line(t.GetPath()))
+		}
 	}
 	for _, g := range s.GetSignals() {
 		d.Reds = append(d.Reds, reds(g, s.GetHorizonS())...)
 	}
 	for _, b := range s.GetBottlenecks() {
-		d.Restrictions = append(d.Restrictions, restrictions(b, s.GetHorizonS())...)
+		d.Restrictions = append(d.Restrictions, restrictions(b.GetPlaceM(), b.GetCapacity(), s.GetHorizonS())...)
 	}
+	d.Restrictions = append(d.Restrictions, restrictions(c.GetExitM(), s.GetExit().GetCapacity(), s.GetHorizonS())...)
 	for _, n := range c.GetNodes() {
 		d.Nodes = append(d.Nodes, picture.Node{Name: n.GetName(), Place: n.GetPlaceM()})
 	}
 	return d
+}
+
+// onEmptyRoad reports whether the field is empty at a point: nobody is there whose trajectory could be drawn.
+func onEmptyRoad(d picture.Diagram, at *pb.PlaceTime) bool {
+	rows, columns := len(d.Density.Places), len(d.Density.Times)
+	if rows == 0 || columns == 0 {
+		return false
+	}
+	row := int(float64(rows) * (at.GetPlaceM() - d.Entry) / (d.Exit - d.Entry))
+	column := int(float64(columns) * at.GetTimeS() / d.Horizon)
+	return d.Density.Values[min(max(row, 0), rows-1)][min(max(column, 0), columns-1)] <= 0
 }
 
 // field turns rows of times into rows of places.
@@ -144,10 +158,9 @@ func greens(g *pb.Signal, horizon float64) []*pb.GreenWindow {
 	return out
 }
 
-// restrictions are the steps of a bottleneck within the horizon that restrict it.
-func restrictions(b *pb.Bottleneck, horizon float64) []picture.Restriction {
+// restrictions are the steps of a schedule within the horizon that restrict the place.
+func restrictions(place float64, steps []*pb.CapacityStep, horizon float64) []picture.Restriction {
 	var out []picture.Restriction
-	steps := b.GetCapacity()
 	for i, s := range steps {
 		end := horizon
 		if i+1 < len(steps) {
@@ -158,7 +171,7 @@ func restrictions(b *pb.Bottleneck, horizon float64) []picture.Restriction {
 			continue
 		}
 		out = append(out, picture.Restriction{
-			Place: b.GetPlaceM(), Start: start, End: end, Label: limitText(s),
+			Place: place, Start: start, End: end, Label: limitText(s),
 			Closed: s.GetFlowVehPerH() == 0 && s.GetEndFlowVehPerH() == 0,
 		})
 	}

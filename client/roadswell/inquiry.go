@@ -28,9 +28,9 @@ const (
 	trajectoriesQuestion
 )
 
-func newInquiry(file *pb.SolveRequest, o solveOptions) inquiry {
-	a := inquiry{request: proto.CloneOf(file), file: fileName(o.file), asked: len(file.GetQuestions())}
-	s := file.GetScenario()
+func newInquiry(file scenarioFile, o solveOptions) inquiry {
+	a := inquiry{request: proto.CloneOf(file.request), file: file.name, asked: len(file.request.GetQuestions())}
+	s := a.request.GetScenario()
 	a.ask(&pb.Question{Ask: &pb.Question_Queues{Queues: &pb.QueuesQuestion{WithPaths: len(o.pictures) > 0}}})
 	a.ask(&pb.Question{Ask: &pb.Question_TravelTimes{TravelTimes: &pb.TravelTimesQuestion{
 		DeparturesS: departures(s.GetHorizonS(), o.every.Seconds()),
@@ -123,11 +123,12 @@ func exitPlace(s *pb.Scenario) float64 {
 	return x
 }
 
-// starts spread traced vehicles over the road at time 0 and over the entry.
+// starts spread traced vehicles over the whole road at time 0 and over the entry.
 func starts(s *pb.Scenario) []*pb.PlaceTime {
 	var out []*pb.PlaceTime
-	step := s.GetHorizonS() / traced
-	for x := exitPlace(s) - step*tracedSpeed; x > s.GetOriginM() && len(out) < traced; x -= step * tracedSpeed {
+	step, exit := s.GetHorizonS()/traced, exitPlace(s)
+	spacing := math.Max(step*tracedSpeed, (exit-s.GetOriginM())/traced)
+	for x := exit - spacing; x > s.GetOriginM() && len(out) < traced; x -= spacing {
 		out = append(out, &pb.PlaceTime{PlaceM: x})
 	}
 	for i := range traced {

@@ -43,9 +43,9 @@ func (a inquiry) heading(response *pb.SolveResponse) string {
 	if title == "" {
 		title = a.file
 	}
-	return fmt.Sprintf("%s\n%s to %s, %s, %s, horizon %s\n%s: %d wave interactions, solved in %.3g ms\n",
+	return fmt.Sprintf("%s\n%s to %s, %s, %s, horizon %s\n%s: %s, solved in %.3g ms\n",
 		title, place(c.GetEntryM()), place(c.GetExitM()), many(len(c.GetStretches()), "segment"), many(len(c.GetNodes()), "node"), clock(c.GetHorizonS()),
-		certificateText(response.GetCertificate()), st.GetInteractions(), 1000*st.GetSolveTimeS())
+		certificateText(response.GetCertificate()), many(int(st.GetInteractions()), "wave interaction"), 1000*st.GetSolveTimeS())
 }
 
 func many(n int, what string) string {

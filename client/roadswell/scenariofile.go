@@ -1,6 +1,8 @@
 package main
 
 import (
+	"bytes"
+	"encoding/json"
 	"errors"
 	"fmt"
 	"io"
@@ -16,21 +18,58 @@ import (
 // largestFile bounds scenario files, bytes; a server takes in no more in any case.
 const largestFile = 16 << 20
 
-// readRequest reads a scenario file: the JSON form of a request. Fields that the contract does not have are errors,
+// scenarioFile is a file that was read.
+type scenarioFile struct {
+	name    string // as the user knows it
+	text    []byte
+	outline *outline
+	request *pb.SolveRequest
+}
+
+// place is where a byte of the file stands, in the way editors and compilers write it.
+func (f scenarioFile) place(at int) string {
+	line, column := lineAndColumn(f.text, at)
+	return fmt.Sprintf("%s:%d:%d", f.name, line, column)
+}
+
+// readScenario reads a scenario file: the JSON form of a request. Fields that the contract does not have are errors,
 // for a name that is spelt wrong would otherwise change the scenario without a word.
-func readRequest(name string, in io.Reader) (*pb.SolveRequest, error) {
+func readScenario(name string, in io.Reader) (scenarioFile, error) {
+	f := scenarioFile{name: fileName(name), request: &pb.SolveRequest{}}
 	text, err := readAll(name, in)
 	if err != nil {
-		return nil, err
+		return f, err
 	}
-	out := &pb.SolveRequest{}
-	if err := protojson.Unmarshal(text, out); err != nil {
-		return nil, fmt.Errorf("%s%s", fileName(name), readable(err))
+	f.text = bytes.TrimPrefix(text, []byte("\uFEFF")) // some editors put this mark before the text
+	if len(bytes.TrimSpace(f.text)) == 0 {
+		return f, fmt.Errorf("%s: the file is empty; expected: {\"scenario\": {...}}", f.name)
 	}
-	if out.GetScenario() == nil {
-		return nil, fmt.Errorf("%s: scenario is missing; expected: {\"scenario\": {...}}", fileName(name))
+	if f.outline, err = outlineOf(f.text); err != nil {
+		return f, f.syntax(err)
 	}
-	return out, nil
+	if slips := f.slipsIn(f.request.ProtoReflect().Descriptor()); slips != "" {
+		return f, errors.New(slips)
+	}
+	if err := protojson.Unmarshal(f.text, f.request); err != nil {
+		return f, fmt.Errorf("%s%s", f.name, readable(err))
+	}
+	if f.request.GetScenario() == nil {
+		return f, fmt.Errorf("%s: scenario is missing; expected: {\"scenario\": {...}}", f.name)
+	}
+	return f, nil
+}
+
+// syntax puts the place before what is wrong with the JSON.
+func (f scenarioFile) syntax(err error) error {
+	var wrong *json.SyntaxError
+	if !errors.As(err, &wrong) {
+		return fmt.Errorf("%s: %w", f.name, err)
+	}
+	at := int(wrong.Offset) - 1 // the offset counts the offending byte
+	if at == len(f.text)-1 && strings.HasPrefix(wrong.Error(), "unexpected end") {
+		at++
+	}
+	return fmt.Errorf("%s: not JSON: %w", f.place(at), err)
 }
 
 func readAll(name string, in io.Reader) ([]byte, error) {
@@ -44,7 +83,7 @@ func readAll(name string, in io.Reader) ([]byte, error) {
 	}
 	text, err := io.ReadAll(io.LimitReader(in, largestFile+1))
 	if err != nil {
-		return nil, fmt.Errorf("%s: %w", fileName(name), err)
+		return nil, err // names the file
 	}
 	if len(text) > largestFile {
 		return nil, fmt.Errorf("%s: larger than %d MiB", fileName(name), largestFile>>20)
@@ -52,10 +91,17 @@ func readAll(name string, in io.Reader) ([]byte, error) {
 	return text, nil
 }
 
-// The parser's errors start with its name and a place: "proto: (line 3:7): unknown field ...".
+func fileName(name string) string {
+	if name == "-" {
+		return "standard input"
+	}
+	return name
+}
+
+// The parser's errors start with its name and a place: "proto: (line 3:7): duplicate field ...".
 var parserPlace = regexp.MustCompile(`^\(line (\d+):(\d+)\):\s*`)
 
-// readable puts the place behind the file's name in the way editors and compilers write it.
+// readable puts the place behind the file's name.
 func readable(err error) string {
 	text := strings.TrimLeft(strings.TrimPrefix(strings.ReplaceAll(err.Error(), "\u00a0", " "), "proto:"), " ")
 	text = strings.TrimPrefix(text, "syntax error ")
@@ -74,6 +120,3 @@ var capital = regexp.MustCompile(`[A-Z]`)
 func contractName(name string) string {
 	return capital.ReplaceAllStringFunc(name, func(c string) string { return "_" + strings.ToLower(c) })
 }
-
-// asError is errors.As, for any type of error.
-func asError[E error](err error, target *E) bool { return errors.As(err, target) }

@@ -7,10 +7,12 @@ import (
 	"os"
 	"path/filepath"
 	"regexp"
+	"slices"
 	"strings"
 	"testing"
 	"time"
 
+	"github.com/roadswell/roadswell/client/picture"
 	pb "github.com/roadswell/roadswell/proto/roadswell/v1"
 	"github.com/roadswell/roadswell/service"
 )
@@ -90,18 +92,23 @@ func TestWhatCannotBeDone(t *testing.T) {
 		args []string
 		says []string
 	}{
-		{"no file", []string{"solve"}, []string{"1 arg"}},
+		{"no file", []string{"solve"}, []string{"0 files", "expected: one"}},
 		{"a file that is not there", []string{"solve", "nowhere.json"}, []string{"nowhere.json"}},
 		{"an unknown field", []string{"solve", file(t, "{\"scenario\": {\n  \"lenght_m\": 5}}")}, []string{"street.json:2:3: unknown field \"lenght_m\""}},
 		{"no JSON", []string{"solve", file(t, "hello")}, []string{"street.json:1:1: "}},
 		{"a text for a number", []string{"solve", file(t, `{"scenario": {"horizon_s": "long"}}`)}, []string{"street.json:1:", "horizon_s"}},
 		{"no scenario", []string{"solve", file(t, `{}`)}, []string{"street.json: scenario is missing"}},
-		{"fields", []string{"solve", good}, []string{"street.json: scenario.segments expected: ", "\n", "street.json: scenario.horizon_s is 0; expected: more than 0"}},
+		{"fields", []string{"solve", good}, []string{"street.json:1:2: scenario.segments expected: ", "\n", "street.json:1:2: scenario.horizon_s is 0; expected: more than 0"}},
 		{"a picture of an unknown kind", []string{"solve", good, "--picture", "x.jpg"}, []string{"--picture", ".svg or .png"}},
+		{"no such command", []string{"solv", good}, []string{`unknown command "solv"`, "solve"}},
+		{"departures too close for the horizon", []string{"solve", file(t, `{"scenario": {"horizon_s": 36000}}`), "--every", "1s"}, []string{"--every is 1s", "at least 4s"}},
 		{"departures too close", []string{"solve", good, "--every", "1ms"}, []string{"--every"}},
 		{"no time", []string{"solve", good, "--timeout", "0s"}, []string{"--timeout"}},
 		{"a server off this machine", []string{"solve", good, "--server", "192.0.2.1:7460"}, []string{"loopback"}},
-		{"nobody there", []string{"solve", good, "--server", "127.0.0.1:1", "--timeout", "3s"}, []string{"127.0.0.1:1"}},
+		{"nobody there", []string{"solve", good, "--server", "127.0.0.1:1", "--timeout", "3s"}, []string{"127.0.0.1:1", "no server answers", "connection refused"}},
+		{"an answer that takes too long", []string{"solve", "testdata/closure.json", "--timeout", "1ns"}, []string{"--timeout is 1ns"}},
+		{"an address without a port", []string{"solve", good, "--server", "127.0.0.1"}, []string{"--server", "with a port"}},
+		{"a folder", []string{"solve", t.TempDir()}, []string{"is a directory"}},
 		{"a picture that cannot be written", []string{"solve", "testdata/closure.json", "--picture", "no/such/place.svg"}, []string{"no/such/place.svg"}},
 	} {
 		out, err := command("", x.args...)
@@ -113,6 +120,14 @@ func TestWhatCannotBeDone(t *testing.T) {
 			if !strings.Contains(err.Error(), says) {
 				t.Errorf("%s: %q does not say %q", x.name, err, says)
 			}
+		}
+	}
+}
+
+func TestTheVersion(t *testing.T) {
+	for _, args := range []string{"version", "--version"} {
+		if out, err := command("", args); err != nil || !strings.HasPrefix(out, "roadswell ") {
+			t.Errorf("%s: %q, %v", args, out, err)
 		}
 	}
 }
@@ -163,6 +178,64 @@ func TestRedsAreWhatIsNotGreen(t *testing.T) {
 	}
 	if all := reds(&pb.Signal{Plan: &pb.Signal_Windows{Windows: &pb.WindowPlan{}}}, 50); len(all) != 1 || all[0].Start != 0 || all[0].End != 50 {
 		t.Errorf("a signal without greens: %v", all)
+	}
+}
+
+// TestRestrictionsAreTheStepsThatRestrict, at a bottleneck as at the exit.
+func TestRestrictionsAreTheStepsThatRestrict(t *testing.T) {
+	steps := []*pb.CapacityStep{
+		{StartS: -60, Limit: &pb.CapacityStep_FlowVehPerH{FlowVehPerH: 1200}},
+		{StartS: 60, Limit: &pb.CapacityStep_FlowVehPerH{}},
+		{StartS: 90, Limit: &pb.CapacityStep_Unrestricted{Unrestricted: true}},
+		{StartS: 700, Limit: &pb.CapacityStep_FlowVehPerH{FlowVehPerH: 600}},
+	}
+	scenario := &pb.Scenario{
+		HorizonS: 600, Segments: []*pb.Segment{{LengthM: 900}}, Exit: &pb.Exit{Capacity: steps},
+		Bottlenecks: []*pb.Bottleneck{{Name: "works", PlaceM: 300, Capacity: steps}},
+	}
+	d := diagram(inquiry{request: &pb.SolveRequest{Scenario: scenario}}, &pb.SolveResponse{Corridor: &pb.Corridor{ExitM: 900}})
+	var want []picture.Restriction
+	for _, place := range []float64{300, 900} {
+		want = append(want, picture.Restriction{Place: place, Start: 0, End: 60, Label: "1,200 veh/h"},
+			picture.Restriction{Place: place, Start: 60, End: 90, Label: "closed", Closed: true})
+	}
+	if !slices.Equal(d.Restrictions, want) {
+		t.Errorf("got %+v, want %+v", d.Restrictions, want)
+	}
+}
+
+// TestTracedVehiclesCoverTheRoad, however short the horizon.
+func TestTracedVehiclesCoverTheRoad(t *testing.T) {
+	for _, x := range []struct{ length, horizon, furthest float64 }{{9000, 7200, 5800}, {9000, 60, 200}, {9, 7200, 9}} {
+		least, entering := x.length, 0
+		list := starts(&pb.Scenario{OriginM: -x.length, HorizonS: x.horizon, Segments: []*pb.Segment{{LengthM: x.length}}})
+		for _, at := range list {
+			if at.GetPlaceM() == -x.length {
+				entering++
+				continue
+			}
+			least = min(least, at.GetPlaceM()+x.length)
+		}
+		if entering != traced || least > x.furthest+1e-6 || len(list) > 2*traced {
+			t.Errorf("%+v: %d vehicles, %d of them enter, the last on the road at %g m", x, len(list), entering, least)
+		}
+	}
+}
+
+// TestNobodyIsDrawnOnAnEmptyRoad: traced vehicles must be there.
+func TestNobodyIsDrawnOnAnEmptyRoad(t *testing.T) {
+	d := picture.Diagram{Horizon: 100, Entry: -500, Exit: 500, Density: picture.Field{
+		Times: []float64{25, 75}, Places: []float64{-250, 250}, Values: [][]float64{{20, 0}, {0, 20}},
+	}}
+	for at, want := range map[[2]float64]bool{
+		{-500, 0}: false, {-500, 49}: false, {-500, 51}: true, {499, 0}: true, {1, 51}: false, {500, 100}: false,
+	} {
+		if got := onEmptyRoad(d, &pb.PlaceTime{PlaceM: at[0], TimeS: at[1]}); got != want {
+			t.Errorf("%v: %t, want %t", at, got, want)
+		}
+	}
+	if onEmptyRoad(picture.Diagram{}, &pb.PlaceTime{}) {
+		t.Error("a picture without a field hides vehicles")
 	}
 }
 

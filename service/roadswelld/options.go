@@ -21,11 +21,20 @@ type options struct {
 	limits     service.Limits
 }
 
+// about opens the help text.
+const about = `roadswelld answers questions about the traffic on a corridor over gRPC (service roadswell.v1.CorridorService, with the
+standard health service) until it is told to stop. This version speaks plaintext and listens on loopback only.
+Forecasts are advisory; local codes and licensed engineers take precedence.`
+
 // parse reads and validates the command line; usage goes to out.
 func parse(args []string, out io.Writer) (options, error) {
 	var o options
 	f := flag.NewFlagSet("roadswelld", flag.ContinueOnError)
 	f.SetOutput(out)
+	f.Usage = func() {
+		_, _ = fmt.Fprintf(out, "%s\n\nUsage: roadswelld [flags]\n\nFlags:\n", about) // nothing can be done about a lost text
+		f.PrintDefaults()
+	}
 	f.StringVar(&o.listen, "listen", "127.0.0.1:7460", "`address` for gRPC; loopback only")
 	f.StringVar(&o.metrics, "metrics", "127.0.0.1:7461", "`address` for /metrics; loopback only, empty for none")
 	f.BoolVar(&o.reflection, "reflection", false, "let callers list services and messages")

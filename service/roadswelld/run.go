@@ -57,7 +57,15 @@ func newLogger(o options, out io.Writer) *slog.Logger {
 	if o.debug {
 		level = slog.LevelDebug
 	}
-	return slog.New(slog.NewJSONHandler(out, &slog.HandlerOptions{Level: level}))
+	return slog.New(slog.NewJSONHandler(out, &slog.HandlerOptions{Level: level, ReplaceAttr: withUnit}))
+}
+
+// withUnit writes lengths of time with their unit, "1.5ms", where JSON would have bare nanoseconds.
+func withUnit(_ []string, a slog.Attr) slog.Attr {
+	if a.Value.Kind() == slog.KindDuration {
+		a.Value = slog.StringValue(a.Value.Duration().String())
+	}
+	return a
 }
 
 // metricsPage is the second, smaller server.

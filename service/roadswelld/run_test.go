@@ -4,6 +4,8 @@ import (
 	"bytes"
 	"context"
 	"encoding/json"
+	"errors"
+	"flag"
 	"fmt"
 	"io"
 	"net/http"
@@ -164,6 +166,27 @@ func TestAnOpenHealthWatchDoesNotHoldUpStopping(t *testing.T) {
 	}
 	if took := time.Since(begin); took > 5*time.Second {
 		t.Errorf("stopping took %s", took)
+	}
+}
+
+// TestLogsNameTheirUnits: a bare number of nanoseconds says nothing to an operator.
+func TestLogsNameTheirUnits(t *testing.T) {
+	var log bytes.Buffer
+	newLogger(options{}, &log).Info("stopping", "grace", 1500*time.Millisecond)
+	if !strings.Contains(log.String(), `"grace":"1.5s"`) {
+		t.Error(log.String())
+	}
+}
+
+func TestHelpSaysWhatItIs(t *testing.T) {
+	var help bytes.Buffer
+	if _, err := parse([]string{"-help"}, &help); !errors.Is(err, flag.ErrHelp) {
+		t.Errorf("asked for help: %v", err)
+	}
+	for _, says := range []string{"roadswell.v1.CorridorService", "advisory", "-listen"} {
+		if !strings.Contains(help.String(), says) {
+			t.Errorf("help does not say %q:\n%s", says, help.String())
+		}
 	}
 }
 

@@ -409,8 +409,10 @@ type PointState struct {
 	Downstream *State `protobuf:"bytes,3,opt,name=downstream,proto3" json:"downstream,omitempty"`
 	// Whether the point lies exactly on a front.
 	OnFront bool `protobuf:"varint,4,opt,name=on_front,json=onFront,proto3" json:"on_front,omitempty"`
-	// Vehicles that have passed the place from time 0 until then, counted from the vehicle at the entry at time 0:
-	// vehicles on the road at time 0 downstream of the entry make it negative at places ahead of them.
+	// Cumulative count: the number of the vehicle that passes the place then, in the order of the road. The vehicle at
+	// the entry at time 0 has number 0, vehicles that enter later have positive numbers, those that were ahead of it
+	// negative ones. From one time to another it grows by the vehicles that passed the place, from one place to
+	// another downstream it falls by the vehicles between them.
 	CountVeh      float64 `protobuf:"fixed64,5,opt,name=count_veh,json=countVeh,proto3" json:"count_veh,omitempty"`
 	unknownFields protoimpl.UnknownFields
 	sizeCache     protoimpl.SizeCache
@@ -481,10 +483,9 @@ func (x *PointState) GetCountVeh() float64 {
 	return 0
 }
 
-// GridAnswer holds one number for each combination of place and time, place by place within time by time: the
-// number for place i and time j stands at index j * (number of places) + i. Quantities that were not asked for are
-// absent. On a front and at a node the numbers
-// are those of the upstream side.
+// GridAnswer holds one number for each combination of place and time, place by place within time by time: with i and
+// j counted from 0, the number for place i and time j stands at index j * (number of places) + i. Quantities that were
+// not asked for are absent. On a front and at a node the numbers are those of the upstream side.
 type GridAnswer struct {
 	state protoimpl.MessageState `protogen:"open.v1"`
 	// Places asked for, m.
@@ -587,7 +588,7 @@ func (x *GridAnswer) GetTwoSided() []*TwoSidedPoint {
 // TwoSidedPoint is a grid point whose downstream side differs from its upstream side.
 type TwoSidedPoint struct {
 	state protoimpl.MessageState `protogen:"open.v1"`
-	// Index into the lists of the grid.
+	// Index into the lists of the grid, from 0.
 	Index int64 `protobuf:"varint,1,opt,name=index,proto3" json:"index,omitempty"`
 	// State just downstream of it.
 	Downstream    *State `protobuf:"bytes,2,opt,name=downstream,proto3" json:"downstream,omitempty"`
@@ -1152,7 +1153,11 @@ func (x *QueuesAnswer) GetNodes() []*NodeQueues {
 	return nil
 }
 
-// NodeQueues are the queues behind one node.
+// NodeQueues are the queues behind one node. A queue belongs to the node where it formed. When it grows back to
+// another node, it goes on upstream of that as the same queue; but where a queue stands behind that node already, it
+// ends there, and what stands further upstream stays the other node's queue: one runs into the other. So the whole
+// reach of congestion behind an incident may be that of several nodes' queues. Congestion that never touched a node
+// (such as dense traffic at time 0) belongs to the next node downstream of it.
 type NodeQueues struct {
 	state protoimpl.MessageState `protogen:"open.v1"`
 	// Name of the node.
@@ -2219,9 +2224,9 @@ type StretchTotals struct {
 	DelayVehicleH float64 `protobuf:"fixed64,4,opt,name=delay_vehicle_h,json=delayVehicleH,proto3" json:"delay_vehicle_h,omitempty"`
 	// Vehicles on it at time 0.
 	InitialVehicles float64 `protobuf:"fixed64,5,opt,name=initial_vehicles,json=initialVehicles,proto3" json:"initial_vehicles,omitempty"`
-	// Vehicles that came onto it.
+	// Vehicles that came onto it since time 0.
 	EnteredVehicles float64 `protobuf:"fixed64,6,opt,name=entered_vehicles,json=enteredVehicles,proto3" json:"entered_vehicles,omitempty"`
-	// Vehicles that went off it.
+	// Vehicles that went off it since time 0.
 	LeftVehicles float64 `protobuf:"fixed64,7,opt,name=left_vehicles,json=leftVehicles,proto3" json:"left_vehicles,omitempty"`
 	// Vehicles on it at the time.
 	StoredVehicles float64 `protobuf:"fixed64,8,opt,name=stored_vehicles,json=storedVehicles,proto3" json:"stored_vehicles,omitempty"`

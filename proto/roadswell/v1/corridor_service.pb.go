@@ -145,7 +145,8 @@ func (NodeKind) EnumDescriptor() ([]byte, []int) {
 	return file_roadswell_v1_corridor_service_proto_rawDescGZIP(), []int{1}
 }
 
-// SolveRequest is one scenario and what is asked about it. Its JSON form is the format of scenario files.
+// SolveRequest is one scenario and what is asked about it. Its JSON form (the standard one of protocol buffers, with
+// the names as they stand here) is the format of scenario files.
 type SolveRequest struct {
 	state protoimpl.MessageState `protogen:"open.v1"`
 	// The scenario. Required.
@@ -425,7 +426,8 @@ func (x *Corridor) GetStretches() []*Stretch {
 // Node is a place at which flow may be held back.
 type Node struct {
 	state protoimpl.MessageState `protogen:"open.v1"`
-	// Its name: as given, "entry" and "exit" for the ends, "join A/B" between the segments A and B.
+	// Its name: as given, "entry" and "exit" for the ends, "join A/B" between the segments A and B. Where a bottleneck
+	// or signal stands at a join or an end, there is one node with the bottleneck's or signal's name.
 	Name string `protobuf:"bytes,1,opt,name=name,proto3" json:"name,omitempty"`
 	// What it is.
 	Kind NodeKind `protobuf:"varint,2,opt,name=kind,proto3,enum=roadswell.v1.NodeKind" json:"kind,omitempty"`

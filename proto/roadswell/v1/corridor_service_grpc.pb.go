@@ -43,7 +43,8 @@ type CorridorServiceClient interface {
 	//   - OK: solved; every question is answered.
 	//   - INVALID_ARGUMENT, INVALID_REQUEST: something in the request cannot be accepted. A google.rpc.BadRequest
 	//     lists all of it at once: for each field its path in this contract ("scenario.segments[1].length_m"), the
-	//     reason (a name of FieldReason, without its prefix), what was given and what is allowed. Should there be more
+	//     reason (a name of FieldReason, without its prefix), what was given and what is allowed. A field is named once,
+	//     in no particular order; what cannot be judged before other faults are mended is not listed. Should there be more
 	//     than fit into an error, the metadata "fields_not_listed" says how many are missing.
 	//   - FAILED_PRECONDITION, NO_CLOSED_FORM: from some time on the exact solution leaves the family that can be
 	//     written down in closed form. It is refused, never approximated. (Not UNIMPLEMENTED: that code is kept for
@@ -95,7 +96,8 @@ type CorridorServiceServer interface {
 	//   - OK: solved; every question is answered.
 	//   - INVALID_ARGUMENT, INVALID_REQUEST: something in the request cannot be accepted. A google.rpc.BadRequest
 	//     lists all of it at once: for each field its path in this contract ("scenario.segments[1].length_m"), the
-	//     reason (a name of FieldReason, without its prefix), what was given and what is allowed. Should there be more
+	//     reason (a name of FieldReason, without its prefix), what was given and what is allowed. A field is named once,
+	//     in no particular order; what cannot be judged before other faults are mended is not listed. Should there be more
 	//     than fit into an error, the metadata "fields_not_listed" says how many are missing.
 	//   - FAILED_PRECONDITION, NO_CLOSED_FORM: from some time on the exact solution leaves the family that can be
 	//     written down in closed form. It is refused, never approximated. (Not UNIMPLEMENTED: that code is kept for

@@ -90,7 +90,8 @@ type FrontKind int32
 const (
 	// Not stated; never in an answer.
 	FrontKind_FRONT_KIND_UNSPECIFIED FrontKind = 0
-	// Denser downstream: vehicles slow down as they pass it. The head of a wave that catches up with what is ahead.
+	// A jump to denser traffic downstream, such as the tail of a queue: vehicles slow down as they pass it, and waves
+	// run into it from one side or both.
 	FrontKind_FRONT_KIND_SHOCK FrontKind = 1
 	// A jump of density that moves as fast as waves do on both of its sides, such as the end of a platoon in free
 	// flow on a straight branch of the relation.
@@ -563,10 +564,12 @@ func (x *FrontsQuestion) GetPathToleranceM() float64 {
 }
 
 // QueuesQuestion asks for the queues behind nodes: the stretches denser than critical that reach back from a node.
+// NodeQueues says to which node a queue belongs where it spreads over several.
 type QueuesQuestion struct {
 	state protoimpl.MessageState `protogen:"open.v1"`
-	// Names of the nodes: of bottlenecks and signals, "entry", "exit", or a join as listed in the answer's corridor.
-	// Empty: every node.
+	// Names of the nodes: of bottlenecks and signals, "entry", "exit", or a join as listed in the answer's corridor
+	// ("join A/B" between the segments A and B). Behind the entry there is no road and so no queue; who waits there is
+	// told by trips and totals. Empty: every node.
 	Nodes []string `protobuf:"bytes,1,rep,name=nodes,proto3" json:"nodes,omitempty"`
 	// Times at which the queue's extent is wanted, s; may be empty.
 	TimesS []float64 `protobuf:"fixed64,2,rep,packed,name=times_s,json=timesS,proto3" json:"times_s,omitempty"`
@@ -650,7 +653,8 @@ func (x *QueuesQuestion) GetPathToleranceM() float64 {
 // TrajectoriesQuestion asks for paths of vehicles.
 type TrajectoriesQuestion struct {
 	state protoimpl.MessageState `protogen:"open.v1"`
-	// Where and when each vehicle is first seen; at least one.
+	// Where and when each vehicle is first seen; at least one. A start at the entry is that of the vehicle which comes
+	// onto the road then. On an empty road a start is that of a vehicle that could have been there.
 	Starts []*PlaceTime `protobuf:"bytes,1,rep,name=starts,proto3" json:"starts,omitempty"`
 	// Places for which the time of passing is wanted, m; may be empty.
 	PassingPlacesM []float64 `protobuf:"fixed64,2,rep,packed,name=passing_places_m,json=passingPlacesM,proto3" json:"passing_places_m,omitempty"`

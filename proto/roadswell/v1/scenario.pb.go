@@ -81,11 +81,14 @@ func (ExcessDemand) EnumDescriptor() ([]byte, []int) {
 // Places are metres along the road, growing downstream (the way traffic goes). Times are seconds from the
 // scenario's time 0; the caller decides which moment that is. Flows and densities are those of all lanes
 // together, save in FlowDensityRelation, which describes one lane. Every number must be finite.
+//
+// Some bounds lie far outside anything built and are not repeated at each field: places are within 10,000 km of 0,
+// flows at most 3.6e9 veh/h. A server also bounds how many entries a list may have (FIELD_REASON_LIMIT).
 type Scenario struct {
 	state protoimpl.MessageState `protogen:"open.v1"`
-	// Place of the corridor's entry, m; any finite number, 0 when absent. Useful to speak in kilometre posts.
+	// Place of the corridor's entry, m; 0 when absent. Useful to speak in kilometre posts.
 	OriginM float64 `protobuf:"fixed64,1,opt,name=origin_m,json=originM,proto3" json:"origin_m,omitempty"`
-	// The stretches of road, upstream first; at least one.
+	// The stretches of road, upstream first; at least one, at most 10,000 km in all.
 	Segments []*Segment `protobuf:"bytes,2,rep,name=segments,proto3" json:"segments,omitempty"`
 	// Places that restrict the flow: lane closures, incidents, work zones, toll plazas. In any order; may be empty.
 	Bottlenecks []*Bottleneck `protobuf:"bytes,3,rep,name=bottlenecks,proto3" json:"bottlenecks,omitempty"`
@@ -97,7 +100,7 @@ type Scenario struct {
 	Exit *Exit `protobuf:"bytes,6,opt,name=exit,proto3" json:"exit,omitempty"`
 	// Traffic on the road at time 0. Absent: an empty road.
 	Initial *InitialTraffic `protobuf:"bytes,7,opt,name=initial,proto3" json:"initial,omitempty"`
-	// Time up to which the scenario is solved, s; more than 0. Required.
+	// Time up to which the scenario is solved, s; from 0.001 to 10,000,000 (115 days). Required.
 	HorizonS float64 `protobuf:"fixed64,8,opt,name=horizon_s,json=horizonS,proto3" json:"horizon_s,omitempty"`
 	// What the scenario is about, for people; any text of at most 200 bytes. It has no effect on the solution.
 	Title         string `protobuf:"bytes,9,opt,name=title,proto3" json:"title,omitempty"`
@@ -203,7 +206,7 @@ type Segment struct {
 	state protoimpl.MessageState `protogen:"open.v1"`
 	// Name used in answers; unique among the segments. Absent: "segment 1", "segment 2", ... in road order.
 	Name string `protobuf:"bytes,1,opt,name=name,proto3" json:"name,omitempty"`
-	// Length, m; more than 0. Required.
+	// Length, m; from 0.01 upwards. Required.
 	LengthM float64 `protobuf:"fixed64,2,opt,name=length_m,json=lengthM,proto3" json:"length_m,omitempty"`
 	// Number of lanes that act alike; more than 0, need not be whole (a narrow lane may count as 0.8). Absent: 1.
 	Lanes *float64 `protobuf:"fixed64,3,opt,name=lanes,proto3,oneof" json:"lanes,omitempty"`
@@ -271,13 +274,15 @@ func (x *Segment) GetRelation() *FlowDensityRelation {
 	return nil
 }
 
-// Bottleneck is a fixed place that lets at most a given flow pass.
+// Bottleneck is a fixed place that lets at most a given flow pass. Nodes (bottlenecks, signals, joins of segments and
+// the two ends) are at least 0.01 m apart. A bottleneck that stands exactly at a join or at an end is one node with it,
+// which then goes by the bottleneck's name alone.
 type Bottleneck struct {
 	state protoimpl.MessageState `protogen:"open.v1"`
 	// Name used in answers and by standing queues; required, unique among bottlenecks and signals, and neither
 	// "entry" nor "exit", which name the ends of the corridor.
 	Name string `protobuf:"bytes,1,opt,name=name,proto3" json:"name,omitempty"`
-	// Place, m; within the corridor, its two ends included.
+	// Place, m; within the corridor, its two ends included, and not that of another bottleneck or signal.
 	PlaceM float64 `protobuf:"fixed64,2,opt,name=place_m,json=placeM,proto3" json:"place_m,omitempty"`
 	// What it lets pass over time; at least one step. Unrestricted before the first step.
 	Capacity      []*CapacityStep `protobuf:"bytes,3,rep,name=capacity,proto3" json:"capacity,omitempty"`
@@ -351,7 +356,8 @@ type CapacityStep struct {
 	Limit isCapacityStep_Limit `protobuf_oneof:"limit"`
 	// Limit at the end of the step, veh/h, 0 or more: between the two ends the limit changes linearly. The step
 	// ends where the next one starts, the last one at the horizon. Absent: the limit stays as it is at the start.
-	// Not together with "unrestricted".
+	// Not together with "unrestricted"; not beside a segment with a curved relation (Greenshields, quadratic free),
+	// where the solution would have no closed form (FIELD_REASON_CLOSED_FORM).
 	EndFlowVehPerH *float64 `protobuf:"fixed64,4,opt,name=end_flow_veh_per_h,json=endFlowVehPerH,proto3,oneof" json:"end_flow_veh_per_h,omitempty"`
 	unknownFields  protoimpl.UnknownFields
 	sizeCache      protoimpl.SizeCache
@@ -444,13 +450,15 @@ func (*CapacityStep_FlowVehPerH) isCapacityStep_Limit() {}
 
 func (*CapacityStep_Unrestricted) isCapacityStep_Limit() {}
 
-// Signal is a traffic signal: nothing passes in red, at most the saturation flow in effective green.
+// Signal is a traffic signal: nothing passes in red, at most the saturation flow in effective green. What is said of
+// the place of a Bottleneck holds for it too.
 type Signal struct {
 	state protoimpl.MessageState `protogen:"open.v1"`
 	// Name used in answers and by standing queues; required, unique among bottlenecks and signals, and neither
 	// "entry" nor "exit".
 	Name string `protobuf:"bytes,1,opt,name=name,proto3" json:"name,omitempty"`
-	// Place of the stop line, m; within the corridor, its two ends included.
+	// Place of the stop line, m; within the corridor, its two ends included, and not that of another bottleneck or
+	// signal.
 	PlaceM float64 `protobuf:"fixed64,2,opt,name=place_m,json=placeM,proto3" json:"place_m,omitempty"`
 	// Most that passes in green, veh/h of all lanes; more than 0. Absent: the road's own capacity.
 	SaturationFlowVehPerH *float64 `protobuf:"fixed64,3,opt,name=saturation_flow_veh_per_h,json=saturationFlowVehPerH,proto3,oneof" json:"saturation_flow_veh_per_h,omitempty"`
@@ -562,12 +570,13 @@ func (*Signal_Windows) isSignal_Plan() {}
 // CyclePlan repeats its greens for ever, in both directions of time.
 type CyclePlan struct {
 	state protoimpl.MessageState `protogen:"open.v1"`
-	// Cycle length, s; more than 0.
+	// Cycle length, s; more than 0, and long enough that there are at most 1,048,576 switches within the horizon.
 	CycleS float64 `protobuf:"fixed64,1,opt,name=cycle_s,json=cycleS,proto3" json:"cycle_s,omitempty"`
-	// A time at which a cycle begins, s; any finite number, 0 when absent.
+	// A time at which a cycle begins, s; may be negative, 0 when absent.
 	OffsetS float64 `protobuf:"fixed64,2,opt,name=offset_s,json=offsetS,proto3" json:"offset_s,omitempty"`
-	// Effective greens, s after the beginning of the cycle: in rising order, apart from each other, within
-	// [0, cycle length]. None: always red.
+	// Effective greens, s after the beginning of the cycle: in rising order, without overlap, within
+	// [0, cycle length]. A green that runs over the end of the cycle is given in two parts, or the offset is moved.
+	// None: always red.
 	Greens        []*GreenWindow `protobuf:"bytes,3,rep,name=greens,proto3" json:"greens,omitempty"`
 	unknownFields protoimpl.UnknownFields
 	sizeCache     protoimpl.SizeCache
@@ -627,7 +636,8 @@ func (x *CyclePlan) GetGreens() []*GreenWindow {
 // WindowPlan lists greens that do not repeat; outside them the signal is red.
 type WindowPlan struct {
 	state protoimpl.MessageState `protogen:"open.v1"`
-	// Effective greens, s of scenario time: in rising order and apart from each other. None: always red.
+	// Effective greens, s of scenario time: in rising order and without overlap; they may reach beyond the solved
+	// time at both ends. None: always red.
 	Greens        []*GreenWindow `protobuf:"bytes,1,rep,name=greens,proto3" json:"greens,omitempty"`
 	unknownFields protoimpl.UnknownFields
 	sizeCache     protoimpl.SizeCache
@@ -789,7 +799,9 @@ type DemandStep struct {
 	// Demand at the start, veh/h; 0 or more.
 	FlowVehPerH float64 `protobuf:"fixed64,2,opt,name=flow_veh_per_h,json=flowVehPerH,proto3" json:"flow_veh_per_h,omitempty"`
 	// Demand at the end of the step, veh/h, 0 or more: between the two ends demand changes linearly. The step
-	// ends where the next one starts, the last one at the horizon. Absent: demand stays as it is at the start.
+	// ends where the next one starts, the last one at the horizon. Absent: demand stays as it is at the start. Not
+	// into a segment with a curved relation (Greenshields, quadratic free), where the solution would have no closed
+	// form (FIELD_REASON_CLOSED_FORM).
 	EndFlowVehPerH *float64 `protobuf:"fixed64,3,opt,name=end_flow_veh_per_h,json=endFlowVehPerH,proto3,oneof" json:"end_flow_veh_per_h,omitempty"`
 	unknownFields  protoimpl.UnknownFields
 	sizeCache      protoimpl.SizeCache
@@ -961,9 +973,9 @@ func (x *InitialTraffic) GetStandingQueues() []*StandingQueue {
 // DensityPiece is a stretch of road over which density changes linearly.
 type DensityPiece struct {
 	state protoimpl.MessageState `protogen:"open.v1"`
-	// Upstream end, m.
+	// Upstream end, m; where the piece before it ends, for the first one the entry.
 	StartM float64 `protobuf:"fixed64,1,opt,name=start_m,json=startM,proto3" json:"start_m,omitempty"`
-	// Downstream end, m; beyond the start.
+	// Downstream end, m; beyond the start, for the last one the exit.
 	EndM float64 `protobuf:"fixed64,2,opt,name=end_m,json=endM,proto3" json:"end_m,omitempty"`
 	// Density of all lanes at the upstream end, veh/km; from 0 to jam density.
 	StartDensityVehPerKm float64 `protobuf:"fixed64,3,opt,name=start_density_veh_per_km,json=startDensityVehPerKm,proto3" json:"start_density_veh_per_km,omitempty"`
@@ -1033,11 +1045,12 @@ func (x *DensityPiece) GetEndDensityVehPerKm() float64 {
 
 // StandingQueue is a queue that reaches upstream from a node at time 0. Behind a red signal and behind a closed
 // bottleneck it is at jam density; behind any other node at the congested density whose flow is what that node
-// lets pass at time 0. It may reach through several segments, and must fit into the road behind its node.
+// lets pass at time 0, so that such a node must hold traffic back then. It may reach through several segments, must
+// fit into the road behind its node, and must not overlap another one.
 type StandingQueue struct {
 	state protoimpl.MessageState `protogen:"open.v1"`
 	// Name of the node that holds it: of a bottleneck or a signal, "exit", or a join ("join A/B" between the
-	// segments A and B). Required.
+	// segments A and B); not "entry". Required.
 	Node string `protobuf:"bytes,1,opt,name=node,proto3" json:"node,omitempty"`
 	// How much stands there; one is required.
 	//
