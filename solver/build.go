@@ -188,7 +188,7 @@ func (k *kernel) start(seg int32, pieces []ProfilePiece, count float64) float64 
 				k.bounds[id].up = ^seg
 			} else {
 				born := int32(len(k.fronts))
-				if k.connect(last, id, g.region.x0, 0, count) {
+				if k.connect(last, id, k.regions[last].downLabel, g.region.upLabel, g.region.x0, 0, count) {
 					k.record(last, id, born)
 				} else {
 					k.regions, k.bounds = k.regions[:id], k.bounds[:id] // one uniform state

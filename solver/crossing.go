@@ -21,7 +21,11 @@ func (p *path) crossing(x0, t0 float64, l line, along side, direction, now, limi
 	}
 	c := p.differenceAlong(e, l.speed, along)
 	for c[0] == 0 && (c[1] != 0 || c[2] != 0 || c[3] != 0) {
-		c = cubic{c[1], c[2], c[3], 0} // they start at one point: that is no meeting
+		c = cubic{c[1], c[2], c[3], 0}
+	}
+	// That they start at one point is no meeting, unless the shock sets out across the line.
+	if e == 0 && slack > 0 && now == t0 && p.setsOut(l.speed, direction) {
+		return now
 	}
 	roots, n := c.roots(max(0, now-t0-slack), min(p.until, limit-t0))
 	for _, T := range roots[:n] {
@@ -39,6 +43,28 @@ func (p *path) passed(e, speed, direction float64) bool {
 	jump := p.up.k - p.down.k
 	return e*direction < 0 && jump != 0 && (speed-p.jumpFlow/jump)*direction < 0
 }
+
+// setsOut reports whether the shock, born on a line, goes to that side of it on which it may not be: by its speed,
+// or where that is the line's, by its acceleration
+//
+//	dv/dt = (mU (cU-v)² - mD (v-cD)²)/(kD-kU),
+//
+// which follows from the chord slope and the rate (v-c) m at which the density beside it changes. A shock that
+// grows from nothing has no say: it runs between the waves of its two sides, which leave the line as they must.
+func (p *path) setsOut(speed, direction float64) bool {
+	jump := p.down.k - p.up.k
+	if jump <= closeness*(p.down.k+p.up.k) {
+		return false
+	}
+	v := -p.jumpFlow / jump
+	if d := v - speed; math.Abs(d) > closeness*(math.Abs(p.up.c)+math.Abs(p.down.c)+math.Abs(v)) {
+		return d*direction > 0
+	}
+	up, down := p.up.gradient(0)*square(p.up.c-v), p.down.gradient(0)*square(v-p.down.c)
+	return (up-down)*direction > closeness*(math.Abs(up)+math.Abs(down))
+}
+
+func square(x float64) float64 { return x * x }
 
 // differenceAlong is the difference of the counts of the two sides along a line, times its denominators.
 func (p *path) differenceAlong(e, v float64, along side) cubic {
@@ -125,8 +151,7 @@ func combineBoth(c cubic, up, down rational) cubic {
 	w := math.Copysign(1, up.s0) * math.Copysign(1, down.s0)
 	// s = sU sD, and each bulge times the other's spread.
 	s0, s1, s2 := up.s0*down.s0, up.s0*down.s1+up.s1*down.s0, up.s1*down.s1
-	uu := square(up)
-	dd := square(down)
+	uu, dd := up.squared(), down.squared()
 	return cubic{
 		w * (2*c[0]*s0 - uu[0]*down.s0 + dd[0]*up.s0),
 		w * (2*(c[0]*s1+c[1]*s0) - uu[1]*down.s0 - uu[0]*down.s1 + dd[1]*up.s0 + dd[0]*up.s1),
@@ -135,5 +160,5 @@ func combineBoth(c cubic, up, down rational) cubic {
 	}
 }
 
-// square returns the coefficients of (u0 + u1 T)².
-func square(r rational) [3]float64 { return [3]float64{r.u0 * r.u0, 2 * r.u0 * r.u1, r.u1 * r.u1} }
+// squared returns the coefficients of (u0 + u1 T)².
+func (r *rational) squared() [3]float64 { return [3]float64{r.u0 * r.u0, 2 * r.u0 * r.u1, r.u1 * r.u1} }

@@ -137,6 +137,28 @@ func (d *diagram) secant(pieceA int, a float64, pieceB int, b float64) float64 {
 	return (pb.flow(b) - pa.flow(a)) / (b - a)
 }
 
+// tangentGap is how far the state (pieceB, b) lies below the tangent at the state (pieceA, a): q(a)+c(a)(b-a)-q(b),
+// summed piece by piece without a difference of like numbers.
+func (d *diagram) tangentGap(pieceA int, a float64, pieceB int, b float64) float64 {
+	c := d.pieces[pieceA].waveSpeed(a)
+	gap := 0.0
+	for i, k := pieceA, a; ; {
+		p := &d.pieces[i]
+		next, end := i, b
+		switch {
+		case i < pieceB:
+			next, end = i+1, p.hi
+		case i > pieceB:
+			next, end = i-1, p.lo
+		}
+		gap += (end - k) * (c - p.waveSpeed(k) - 0.5*p.d*(end-k))
+		if i == pieceB {
+			return gap
+		}
+		i, k = next, end
+	}
+}
+
 // same reports whether two curves are the same relation, number for number.
 func (d *diagram) same(o *diagram) bool {
 	if d == o {

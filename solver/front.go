@@ -69,16 +69,12 @@ type path struct {
 	upPiece, downPiece int32
 }
 
-// newPath returns the path of a shock born at (x, t) between two regions. Jumps of density and flow below the
-// segment's tolerances are taken as none: the shock grows from nothing, or starts at rest.
-func newPath(u, d *region, x, t float64, seg *segment) path {
-	p := path{up: u.from(x, t), down: d.from(x, t), upPiece: u.piece, downPiece: d.piece}
+// newPath returns the path of a shock born at time t between two regions with densities ku and kd there. A jump of
+// density below the segment's tolerance is taken as none: the shock grows from nothing.
+func newPath(u, d *region, ku, kd, t float64, seg *segment) path {
+	p := path{up: u.at(ku, t), down: d.at(kd, t), upPiece: u.piece, downPiece: d.piece}
 	if math.Abs(p.down.k-p.up.k) <= seg.densityTolerance {
 		p.down.k = p.up.k
-	}
-	p.jumpFlow = p.up.flow() - p.down.flow()
-	if math.Abs(p.jumpFlow) <= seg.flowTolerance {
-		p.jumpFlow = 0
 	}
 	p.frame = p.down.c
 	if !p.up.uniform() {
@@ -87,9 +83,29 @@ func newPath(u, d *region, x, t float64, seg *segment) path {
 	if !p.down.uniform() {
 		p.relSpeed = p.down.c - p.frame
 	}
-	p.frameJumpFlow = p.jumpFlow - p.frame*(p.up.k-p.down.k)
+	p.jumpFlows(seg)
 	p.until = p.lastsUntil()
 	return p
+}
+
+// jumpFlows sets the jumps of flow. In the frame, which is the wave speed of one side, the jump is how far the
+// other side lies below that one's tangent: a sum of terms of one sign, right to the last digit also where the
+// densities nearly agree. A jump of flow at rest below the segment's tolerance is taken as none where the waves of
+// both sides come to a shock at rest.
+func (p *path) jumpFlows(seg *segment) {
+	d := seg.diagram
+	u, w := int(p.upPiece), int(p.downPiece)
+	if p.up.uniform() {
+		p.frameJumpFlow = -d.tangentGap(w, p.down.k, u, p.up.k)
+	} else {
+		p.frameJumpFlow = d.tangentGap(u, p.up.k, w, p.down.k)
+	}
+	p.jumpFlow = p.frameJumpFlow + p.frame*(p.up.k-p.down.k)
+	rests := d.pieces[u].waveSpeed(p.up.k) >= -seg.speedTolerance && d.pieces[w].waveSpeed(p.down.k) <= seg.speedTolerance
+	if rests && math.Abs(p.jumpFlow) <= seg.flowTolerance {
+		p.jumpFlow = 0
+		p.frameJumpFlow = -p.frame * (p.up.k - p.down.k)
+	}
 }
 
 // lastsUntil is the first zero of the square of the jump, which is linear in time with one uniform side and

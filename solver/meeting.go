@@ -85,15 +85,24 @@ func (k *kernel) linesMeet(r *region, b bound, up, down line) float64 {
 		return r.focus()
 	}
 	closing := up.speed - down.speed
-	if closing <= 0 {
-		return math.Inf(1)
-	}
 	from := max(up.t0, down.t0)
 	gap := down.at(from) - up.at(from)
 	if up.t0 == down.t0 {
 		gap = down.x0 - up.x0
 	}
+	if b.up >= 0 && b.down >= 0 && k.coincide(r, gap, closing) {
+		return k.now
+	}
+	if closing <= 0 {
+		return math.Inf(1)
+	}
 	return max(k.now, from+gap/closing)
+}
+
+// coincide reports whether two fronts run along one line: what is between them has no width and never gets any.
+func (k *kernel) coincide(r *region, gap, closing float64) bool {
+	seg := &k.segments[r.seg]
+	return math.Abs(closing) <= seg.speedTolerance && gap <= closeness*(seg.end-seg.start)
 }
 
 // labelsMeet: both bounds of a profile are curved shocks. They only ever consume its characteristics, so the

@@ -50,8 +50,9 @@ type Strip struct {
 }
 
 // Queues lists the queues of a node in order of time. A queue that spills back over a node upstream stays one
-// queue, of the node where it formed; where it reaches the queue of another node, that one ends and its vehicles
-// are in this one. Errors: *[InvalidError] for an unknown node.
+// queue, of the node where it formed, unless a queue of that node stands there: each keeps its own, and the
+// downstream one reaches up to the node. Where its tail comes to the head of a queue that has left its node, the two
+// are one: the upstream one ends and its vehicles are in the downstream one. Errors: *[InvalidError] for an unknown node.
 func (s *Solution) Queues(node string) ([]Queue, error) {
 	i, err := s.node(node)
 	if err != nil {

@@ -91,11 +91,14 @@ type local struct {
 const apexAge = 1e-9
 
 // from returns the region as seen from (x, t).
-func (g *region) from(x, t float64) local {
+func (g *region) from(x, t float64) local { return g.at(g.density(x, t), t) }
+
+// at returns the region as seen from its point of density k at time t.
+func (g *region) at(k, t float64) local {
 	if g.uniform() {
 		return local{k: g.k, s: g.s, r: g.r + g.k*g.c}
 	}
-	k, s := g.density(x, t), g.spread(t)
+	s := g.spread(t)
 	if s == 0 {
 		s = g.d * apexAge
 	}

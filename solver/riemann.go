@@ -13,11 +13,11 @@ type wave struct {
 // common count is n: it puts fronts and, between them, new regions (Lax 1957, Comm. Pure Appl. Math. 10,
 // 537-566; for corners of the relation, Dafermos 1972, J. Math. Anal. Appl. 38, 33-41). A rising density makes
 // one shock; a falling one makes fans on curved pieces, contacts on straight ones and a uniform state at each
-// corner. It reports false where there is nothing to put: both sides are the same uniform state.
-func (k *kernel) connect(up, down int32, x, t, n float64) bool {
+// corner. ku and kd are the densities of the two regions there. It reports false where there is nothing to put:
+// both sides are the same uniform state.
+func (k *kernel) connect(up, down int32, ku, kd, x, t, n float64) bool {
 	u, d := &k.regions[up], &k.regions[down]
 	seg := &k.segments[u.seg]
-	ku, kd := u.edgeLabel(x, t, u.downLabel), d.edgeLabel(x, t, d.upLabel)
 	equal := math.Abs(ku-kd) <= seg.densityTolerance
 	switch {
 	case equal && u.uniform() && d.uniform():
@@ -60,7 +60,7 @@ func (k *kernel) rise(up, down int32, x, t, ku, kd float64) {
 		f.speed = seg.diagram.secant(int(u.piece), ku, int(d.piece), kd)
 	} else {
 		f.path = int32(len(k.paths))
-		k.paths = append(k.paths, newPath(u, d, x, t, seg))
+		k.paths = append(k.paths, newPath(u, d, ku, kd, t, seg))
 	}
 	k.addFront(f)
 }

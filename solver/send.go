@@ -32,7 +32,8 @@ func (k *kernel) put(index int32, s side, fresh region, old int32, count float64
 	if s == downSide {
 		up, down, direction = g, old, 1
 	}
-	if !k.connect(up, down, n.x, k.now, count) {
+	ku, kd := k.labelAt(n, up, upSide), k.labelAt(n, down, downSide)
+	if !k.connect(up, down, ku, kd, n.x, k.now, count) {
 		// The flows differed by a rounding, the densities do not: old carries the flow after all.
 		k.regions, k.bounds = k.regions[:g], k.bounds[:g]
 		return

@@ -51,5 +51,8 @@ func Solve(ctx context.Context, s Scenario, b Budget) (*Solution, error) {
 	if err := k.run(ctx, b); err != nil {
 		return nil, err
 	}
+	if k.bytes() > b.Memory {
+		return nil, &LimitError{Limit: "bytes", Max: b.Memory, Reached: k.now}
+	}
 	return newSolution(&s, l, k), nil
 }

@@ -167,14 +167,20 @@ func (set *stripSet) passage(node int32, p *passage) {
 	}
 	s.owner = node
 	if p.governs == BySupply && p.down >= 0 && set.congested(p.down) && set.of[p.down] >= 0 {
-		if o := set.at(p.down).owner; o >= 0 {
-			s.owner = o
-		}
+		s.owner = set.at(p.down).own()
 	}
 }
 
-// finish finds the ends of the strips and lists them by node, in order of birth. A strip that never stood at a
-// node belongs to the one at the downstream end of its segment.
+// own returns the node that the strip belongs to. One that never stood at a node belongs to that at the downstream
+// end of its segment.
+func (p *strip) own() int32 {
+	if p.owner < 0 {
+		p.owner = p.segment + 1
+	}
+	return p.owner
+}
+
+// finish finds the ends of the strips and lists them by node, in order of birth.
 func (set *stripSet) finish() {
 	last := make([]float64, len(set.list))
 	for g := range set.of {
@@ -188,9 +194,6 @@ func (set *stripSet) finish() {
 		if s.merged < 0 {
 			s.ended = last[i]
 		}
-		if s.owner < 0 {
-			s.owner = s.segment + 1
-		}
 		// An end that no event ever named is the segment's.
 		if len(s.tails) == 0 {
 			s.mark(&s.tails, s.born, ^s.segment)
@@ -198,7 +201,7 @@ func (set *stripSet) finish() {
 		if len(s.heads) == 0 {
 			s.mark(&s.heads, s.born, ^(s.segment + 1))
 		}
-		set.byNode[s.owner] = append(set.byNode[s.owner], int32(i))
+		set.byNode[s.own()] = append(set.byNode[s.own()], int32(i))
 	}
 	for _, ids := range set.byNode {
 		sort.SliceStable(ids, func(i, j int) bool { return set.list[ids[i]].born < set.list[ids[j]].born })

@@ -83,7 +83,13 @@ func (tr Trajectory) Position(t float64) float64 {
 // PassingTime returns when the vehicle passes place x [s]; ok is false where it has not by the end, or started
 // beyond x. For a place at which it stands for a while it is the time at which it arrives there.
 func (tr Trajectory) PassingTime(x float64) (t float64, ok bool) {
-	if len(tr.legs) == 0 || x < tr.legs[0].x-samePlace || x > tr.End.Place+samePlace {
+	if math.IsNaN(x) || x > tr.End.Place+samePlace {
+		return 0, false
+	}
+	if len(tr.legs) == 0 {
+		return tr.End.Time, x >= tr.End.Place-samePlace
+	}
+	if x < tr.legs[0].x-samePlace {
 		return 0, false
 	}
 	i := sort.Search(len(tr.legs), func(i int) bool { return tr.legs[i].place(tr.legs[i].end) >= x })
