@@ -76,7 +76,7 @@ var fieldCases = []struct {
 	{"a queue behind nothing", onRoad(`"initial": {"standing_queues": [{"node": "mole", "vehicles": 5}]}`), "scenario.initial.standing_queues[0].node", "UNKNOWN", []string{`is "mole"`, `"exit"`}},
 	{"a queue of no size", onRoad(`"initial": {"standing_queues": [{"node": "exit"}]}`), "scenario.initial.standing_queues[0]", "REQUIRED", []string{"vehicles or length_m"}},
 	{"a queue that does not fit", onRoad(`"bottlenecks": [{"name": "b", "place_m": 500, "capacity": [{"flow_veh_per_h": 0}]}], "initial": {"standing_queues": [{"node": "b", "length_m": 501}]}`), "scenario.initial.standing_queues[0].length_m", "FITS", []string{"is 501", "fits"}},
-	{"a sloped demand on a curved relation", scenario(curvedRoad + `, "entry": {"demand": [{"flow_veh_per_h": 100, "end_flow_veh_per_h": 200}]}`), "scenario.entry.demand", "CLOSED_FORM", []string{"steps"}},
+	{"a sloped demand on a curved relation", scenario(curvedRoad + `, "entry": {"demand": [{"flow_veh_per_h": 100, "end_flow_veh_per_h": 200}]}`), "scenario.entry.demand[0].end_flow_veh_per_h", "CLOSED_FORM", []string{"steps"}},
 	{"a question of nothing", asking(``), "questions[0]", "REQUIRED", nil},
 	{"a long label", asking(`"label": "` + strings.Repeat("x", 201) + `", "totals": {}`), "questions[0].label", "LIMIT", []string{"201"}},
 	{"a point beyond the exit", asking(`"states": {"points": [{"place_m": 1001}]}`), "questions[0].states.points[0].place_m", "RANGE", []string{"is 1001", "1000 m"}},

@@ -10,7 +10,8 @@ import "math"
 //
 // On the line the difference of the two sides' counts is a rational function of time, zero where the shock
 // is on the line. It is also zero where the other root of the path's quadratic is: there the difference falls
-// in place, that is, the upstream side, continued, is the denser one.
+// in place, that is, the upstream side, continued, is the denser one. Where the shock vanishes both roots are one,
+// which roundings may hide; the place at that time tells whether the line has been met.
 func (p *path) crossing(x0, t0 float64, l line, along side, direction, now, limit, slack float64) float64 {
 	e := l.at(t0) - x0
 	if l.t0 == t0 {
@@ -34,7 +35,24 @@ func (p *path) crossing(x0, t0 float64, l line, along side, direction, now, limi
 			return max(now, t0+T)
 		}
 	}
+	if p.until <= limit-t0 && direction*(e+l.speed*p.until-p.offset(p.until)) <= p.reach(along) {
+		return max(now, t0+p.until)
+	}
 	return math.Inf(1)
+}
+
+// reach is within what distance the shock is taken to have met a line where it vanishes. The time of that is a
+// double root where both sides are used up at once, good to half the digits, and so is then the place among the
+// characteristics of a side; what is taken with the line is a square of that.
+func (p *path) reach(along side) float64 {
+	jump := p.down.k - p.up.k
+	switch along {
+	case upSide:
+		return p.near + halfDigits*math.Abs(jump*p.up.s)
+	case downSide:
+		return p.near + halfDigits*math.Abs(jump*p.down.s)
+	}
+	return p.near
 }
 
 // passed reports whether the shock is born beyond a line at distance e and still leaving it behind: a rounding
@@ -63,6 +81,9 @@ func (p *path) setsOut(speed, direction float64) bool {
 	up, down := p.up.gradient(0)*square(p.up.c-v), p.down.gradient(0)*square(v-p.down.c)
 	return (up-down)*direction > closeness*(math.Abs(up)+math.Abs(down))
 }
+
+// halfDigits is the relative error of a double root.
+const halfDigits = 0x1p-20
 
 func square(x float64) float64 { return x * x }
 

@@ -125,6 +125,8 @@ func (v *violations) err() error {
 	return &InvalidError{Violations: v.list}
 }
 
+func (v *violations) none() bool { return len(v.list) == 0 }
+
 func (v *violations) finite(field string, x float64) bool {
 	if math.IsNaN(x) || math.IsInf(x, 0) {
 		v.add(field, RuleFinite, x, "a finite number")

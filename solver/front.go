@@ -65,7 +65,9 @@ type path struct {
 	frameJumpFlow   float64 // the same in the frame
 	// until is the time after birth at which the formula's shock would have no jump left. One of the sides is
 	// used up before; past it the formula follows a root that is no shock.
-	until              float64
+	until float64
+	// near [m] is within which the shock is taken to have met a line where it vanishes.
+	near               float64
 	upPiece, downPiece int32
 }
 
@@ -85,6 +87,7 @@ func newPath(u, d *region, ku, kd, t float64, seg *segment) path {
 	}
 	p.jumpFlows(seg)
 	p.until = p.lastsUntil()
+	p.near = closeness * (math.Abs(seg.start) + math.Abs(seg.end))
 	return p
 }
 
@@ -153,7 +156,10 @@ func (p *path) offset(T float64) float64 {
 	c := T * (p.frameJumpFlow + 0.5*T*mD*p.relSpeed*p.relSpeed)
 	// B² - 4AC with the terms that cancel taken out by hand; its root is the jump of density at T.
 	square := jump*jump - 2*T*(jump*mD*p.relSpeed+dm*p.frameJumpFlow) + mU*mD*p.relSpeed*p.relSpeed*T*T
-	root := math.Sqrt(max(0, square))
+	root := 0.0
+	if T < p.until {
+		root = math.Sqrt(max(0, square))
+	}
 	if b > 0 {
 		return p.frame*T - 2*c/(b+root)
 	}

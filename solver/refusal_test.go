@@ -101,17 +101,17 @@ func TestSlopedSchedulesNextToCurves(t *testing.T) {
 		scenario solver.Scenario
 		field    string // empty: accepted
 	}{
-		{"demand into a curve", []solver.Segment{curve, straight}, solver.Scenario{Entry: solver.Entry{Demand: sloped()}}, "Entry.Demand"},
+		{"demand into a curve", []solver.Segment{curve, straight}, solver.Scenario{Entry: solver.Entry{Demand: sloped()}}, "Entry.Demand[0].Slope"},
 		{"demand into a straight one", []solver.Segment{straight, curve}, solver.Scenario{Entry: solver.Entry{Demand: sloped()}}, ""},
-		{"exit of a curve", []solver.Segment{straight, curve}, solver.Scenario{Exit: solver.Exit{Capacity: sloped()}}, "Exit.Capacity"},
+		{"exit of a curve", []solver.Segment{straight, curve}, solver.Scenario{Exit: solver.Exit{Capacity: sloped()}}, "Exit.Capacity[0].Slope"},
 		{"exit of a straight one", []solver.Segment{curve, straight}, solver.Scenario{Exit: solver.Exit{Capacity: sloped()}}, ""},
-		{"works on a curve", []solver.Segment{straight, curve}, solver.Scenario{Bottlenecks: works(700)}, "Bottlenecks[0].Capacity"},
-		{"works just before a curve", []solver.Segment{straight, curve}, solver.Scenario{Bottlenecks: works(500)}, "Bottlenecks[0].Capacity"},
-		{"works just after a curve", []solver.Segment{curve, straight}, solver.Scenario{Bottlenecks: works(500)}, "Bottlenecks[0].Capacity"},
+		{"works on a curve", []solver.Segment{straight, curve}, solver.Scenario{Bottlenecks: works(700)}, "Bottlenecks[0].Capacity[0].Slope"},
+		{"works just before a curve", []solver.Segment{straight, curve}, solver.Scenario{Bottlenecks: works(500)}, "Bottlenecks[0].Capacity[0].Slope"},
+		{"works just after a curve", []solver.Segment{curve, straight}, solver.Scenario{Bottlenecks: works(500)}, "Bottlenecks[0].Capacity[0].Slope"},
 		{"works away from the curve", []solver.Segment{straight, curve}, solver.Scenario{Bottlenecks: works(300)}, ""},
-		{"works at the exit of a curve", []solver.Segment{straight, curve}, solver.Scenario{Bottlenecks: works(1000)}, "Bottlenecks[0].Capacity"},
+		{"works at the exit of a curve", []solver.Segment{straight, curve}, solver.Scenario{Bottlenecks: works(1000)}, "Bottlenecks[0].Capacity[0].Slope"},
 		{"a sloped exit with a signal at it", []solver.Segment{straight, curve},
-			solver.Scenario{Exit: solver.Exit{Capacity: sloped()}, Signals: []solver.Signal{light("light", 1000, 0, 50)}}, "Exit.Capacity"},
+			solver.Scenario{Exit: solver.Exit{Capacity: sloped()}, Signals: []solver.Signal{light("light", 1000, 0, 50)}}, "Exit.Capacity[0].Slope"},
 	} {
 		t.Run(c.name, func(t *testing.T) {
 			s := c.scenario
@@ -127,7 +127,7 @@ func TestSlopedSchedulesNextToCurves(t *testing.T) {
 				}
 				return
 			}
-			if list := violationsOf(t, err); len(list) != 1 || !names(list, c.field, solver.RuleClosedForm, "") {
+			if list := violationsOf(t, err); len(list) != 1 || !names(list, c.field, solver.RuleClosedForm, "-0.0001") {
 				t.Errorf("violations %+v, want %s of %s", list, solver.RuleClosedForm, c.field)
 			}
 		})

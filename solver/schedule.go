@@ -82,18 +82,14 @@ func least(a, b Schedule) Schedule {
 	return out
 }
 
-// sloped reports whether any piece is not a step.
-func (s Schedule) sloped() bool {
-	for i := range s {
-		if s[i].Slope != 0 {
-			return true
-		}
-	}
-	return false
-}
+// maxPieces bounds a schedule.
+const maxPieces = 1 << 20
 
 // validate checks times and rates up to the horizon. Rates may be +Inf only where unlimited is allowed.
 func (s Schedule) validate(field string, horizon float64, unlimited bool, v *violations) {
+	if len(s) > maxPieces {
+		v.add(field, RuleRange, len(s), fmt.Sprintf("at most %d pieces", maxPieces))
+	}
 	for i := range s {
 		at := fmt.Sprintf("%s[%d]", field, i)
 		p := &s[i]
@@ -114,13 +110,14 @@ func (s Schedule) validate(field string, horizon float64, unlimited bool, v *vio
 
 // validate checks the rates of a piece that ends at the given time.
 func (p *SchedulePiece) validate(at string, end float64, v *violations) {
+	before := len(v.list)
 	v.within(at+".Slope", p.Slope, -maxRate, maxRate)
 	v.notNegative(at+".Rate", p.Rate)
-	if p.Rate > maxRate {
+	if p.Rate > maxRate && !math.IsInf(p.Rate, 1) {
 		v.add(at+".Rate", RuleRange, p.Rate, fmt.Sprintf("at most %g veh/s", float64(maxRate)))
 	}
 	last := p.Rate + p.Slope*(end-p.Start)
-	if end > p.Start && (last < -closeness*p.Rate || last > maxRate) {
+	if len(v.list) == before && end > p.Start && (last < -closeness*p.Rate || last > maxRate) {
 		v.add(at+".Slope", RuleRange, p.Slope, fmt.Sprintf("a slope that keeps the rate between 0 and %g veh/s; it reaches %g at %g s", float64(maxRate), last, end))
 	}
 }
@@ -180,5 +177,21 @@ func (p *Plan) validate(field string, v *violations) {
 		if p.Cycle > 0 && (w.Start < 0 || w.End > p.Cycle) {
 			v.add(at, RuleRange, w, fmt.Sprintf("within the cycle, [0, %g]", p.Cycle))
 		}
+	}
+}
+
+// validateSwitches bounds the number of cycles that a plan unfolds to.
+func (p *Plan) validateSwitches(field string, horizon float64, v *violations) {
+	if p.Cycle == 0 {
+		return
+	}
+	if p.Cycle > maxHorizon {
+		v.add(field+".Cycle", RuleRange, p.Cycle, fmt.Sprintf("at most %g s", float64(maxHorizon)))
+	}
+	if n := horizon / p.Cycle * float64(2*max(1, len(p.Greens))); n > maxSwitches {
+		v.add(field+".Cycle", RuleRange, p.Cycle, fmt.Sprintf("long enough that the signal switches at most %d times within the horizon", maxSwitches))
+	}
+	if math.Abs(p.Offset) > maxHorizon || math.Abs(p.Offset) > maxSwitches*p.Cycle {
+		v.add(field+".Offset", RuleRange, p.Offset, fmt.Sprintf("at most %g s and %d cycles in size", float64(maxHorizon), maxSwitches))
 	}
 }

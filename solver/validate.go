@@ -8,19 +8,18 @@ import (
 // What a scenario may hold. The bounds are far outside anything built; they keep every quantity that the
 // solver forms within the range in which its tolerances mean what they say.
 const (
-	minLength      = 0.01    // of a segment [m]
-	maxPlace       = 1e7     // size of a place [m]
-	minHorizon     = 1e-3    // [s]
-	maxHorizon     = 1e7     // [s], about 115 days
-	minSpeed       = 0.01    // free-flow speed [m/s]
-	maxSpeed       = 1000    // any wave speed [m/s]
-	minJamDensity  = 1e-4    // [veh/m]
-	maxJamDensity  = 1e3     // [veh/m]
-	minCapacity    = 1e-6    // [veh/s]
-	maxRate        = 1e6     // any rate, of demand or capacity [veh/s]
-	maxSwitches    = 1 << 20 // of one signal within the horizon
-	maxSegments    = 1 << 16
-	maxInputPieces = 1 << 20 // of one schedule or profile
+	minLength     = 0.01    // of a segment [m]
+	maxPlace      = 1e7     // size of a place [m]
+	minHorizon    = 1e-3    // [s]
+	maxHorizon    = 1e7     // [s], about 115 days
+	minSpeed      = 0.01    // free-flow speed [m/s]
+	maxSpeed      = 1000    // any wave speed [m/s]
+	minJamDensity = 1e-4    // [veh/m]
+	maxJamDensity = 1e3     // [veh/m]
+	minCapacity   = 1e-6    // [veh/s]
+	maxRate       = 1e6     // any rate, of demand or capacity [veh/s]
+	maxSwitches   = 1 << 20 // of one signal within the horizon
+	maxSegments   = 1 << 16
 )
 
 // Validate reports all that is wrong with the scenario as one *[InvalidError], or nil.
@@ -29,44 +28,72 @@ func (s Scenario) Validate() error {
 	return err
 }
 
+// findings are the violations found so far, by the part of the scenario that they are in. A part that is sound can
+// be judged whatever is wrong with the others.
+type findings struct {
+	time, road, controls, ends, initial violations
+}
+
+func (f *findings) err() error {
+	all := violations{}
+	for _, part := range [...]*violations{&f.road, &f.controls, &f.ends, &f.initial, &f.time} {
+		all.list = append(all.list, part.list...)
+	}
+	return all.err()
+}
+
 // prepare validates the scenario and lays it out.
 func (s *Scenario) prepare() (layout, error) {
-	var v violations
-	v.within("Origin", s.Origin, -maxPlace, maxPlace)
+	var f findings
+	s.validateTime(&f.time)
+	s.validateRoad(&f.road)
+	s.validateControls(&f)
+	s.validateEnds(&f)
+	s.validateInitialNumbers(&f.initial)
+	if !f.road.none() {
+		return layout{}, f.err()
+	}
+	judged := s.judgeable(&f)
+	l := judged.layout()
+	scheduled := f.time.none() && f.controls.none() && f.ends.none()
+	s.validateNames(l.nodes, &f.road)
+	s.validateSpacing(l, &f.controls)
+	judged.validateClosedForm(l, &f.ends)
+	s.validateInitial(l, scheduled, &f.initial)
+	return l, f.err()
+}
+
+// judgeable is the scenario without those schedules of which something is wrong: what is left can be laid out.
+func (s *Scenario) judgeable(f *findings) Scenario {
+	out := *s
+	if !f.time.none() {
+		out.Horizon = minHorizon
+	}
+	if !f.time.none() || !f.controls.none() {
+		out.Bottlenecks, out.Signals = nil, nil
+	}
+	if !f.time.none() || !f.ends.none() {
+		out.Entry.Demand, out.Exit.Capacity = nil, nil
+	}
+	return out
+}
+
+func (s *Scenario) validateTime(v *violations) {
 	v.positive("Horizon", s.Horizon)
 	if s.Horizon > 0 {
 		v.within("Horizon", s.Horizon, minHorizon, maxHorizon)
 	}
-	s.validateSegments(&v)
-	end := math.Inf(1)
-	if len(v.list) == 0 {
-		end = s.Origin
-		for i := range s.Segments {
-			end += s.Segments[i].Length
-		}
-	}
-	s.validateControls(end, &v)
-	s.validateEnds(&v)
-	s.validateInitialNumbers(&v)
-	if len(v.list) > 0 {
-		return layout{}, v.err()
-	}
-	l := s.layout()
-	nodes, segments := l.nodes, l.segments
-	for i := range nodes {
-		if first := nodeNamed(nodes, nodes[i].name); first != i {
-			v.add("Segments", RuleUnique, nodes[i].name, "names of segments, bottlenecks and signals that give every node a name of its own")
-		}
-	}
-	s.validateSpacing(l, &v)
-	s.validateClosedForm(nodes, segments, &v)
-	s.validateInitial(nodes, segments, &v)
-	return l, v.err()
 }
 
-func (s *Scenario) validateSegments(v *violations) {
-	if n := len(s.Segments); n == 0 || n > maxSegments {
-		v.add("Segments", RuleRequired, n, fmt.Sprintf("between 1 and %d segments", maxSegments))
+// validateRoad checks what the corridor is made of.
+func (s *Scenario) validateRoad(v *violations) {
+	v.within("Origin", s.Origin, -maxPlace, maxPlace)
+	switch n := len(s.Segments); {
+	case n == 0:
+		v.add("Segments", RuleRequired, n, "at least one segment")
+		return
+	case n > maxSegments:
+		v.add("Segments", RuleRange, n, fmt.Sprintf("at most %d segments", maxSegments))
 		return
 	}
 	names := map[string]bool{}
@@ -88,6 +115,15 @@ func (s *Scenario) validateSegments(v *violations) {
 	}
 }
 
+// validateNames: the names of joins are made of those of segments.
+func (s *Scenario) validateNames(nodes []node, v *violations) {
+	for i := range nodes {
+		if first := nodeNamed(nodes, nodes[i].name); first != i {
+			v.add("Segments", RuleUnique, nodes[i].name, "names of segments, bottlenecks and signals that give every node a name of its own")
+		}
+	}
+}
+
 func validateRelation(at string, r Relation, v *violations) {
 	if !r.Valid() {
 		v.add(at, RuleRequired, nil, "a flow-density relation made by one of the constructors")
@@ -101,44 +137,58 @@ func validateRelation(at string, r Relation, v *violations) {
 	}
 }
 
-// validateControls checks bottlenecks and signals; end is the exit's place, +Inf where it is not known.
-func (s *Scenario) validateControls(end float64, v *violations) {
+// validateControls checks bottlenecks and signals.
+func (s *Scenario) validateControls(f *findings) {
+	v := &f.controls
+	exit := float64(maxPlace)
+	if f.road.none() {
+		exit = s.exitPlace()
+	}
 	names := map[string]bool{}
 	for i := range s.Bottlenecks {
 		b := &s.Bottlenecks[i]
 		at := fmt.Sprintf("Bottlenecks[%d]", i)
 		v.named(at+".Name", b.Name, names)
-		v.within(at+".Place", b.Place, s.Origin-samePlace, min(end, maxPlace)+samePlace)
-		b.Capacity.validate(at+".Capacity", s.Horizon, true, v)
+		v.onRoad(at+".Place", b.Place, s.Origin, exit)
+		b.Capacity.validate(at+".Capacity", f.horizon(s), true, v)
 	}
 	for i := range s.Signals {
 		g := &s.Signals[i]
 		at := fmt.Sprintf("Signals[%d]", i)
 		v.named(at+".Name", g.Name, names)
-		v.within(at+".Place", g.Place, s.Origin-samePlace, min(end, maxPlace)+samePlace)
+		v.onRoad(at+".Place", g.Place, s.Origin, exit)
 		if !(g.SaturationFlow > 0) {
 			v.add(at+".SaturationFlow", RulePositive, g.SaturationFlow, "more than 0")
 		}
 		g.Plan.validate(at+".Plan", v)
-		s.validateSwitches(at, g, v)
+		g.Plan.validateSwitches(at+".Plan", f.horizon(s), v)
 	}
-	if !math.IsInf(end, 1) && len(v.list) == 0 {
+	if v.none() {
 		s.validatePlaces(v)
 	}
 }
 
-func (s *Scenario) validateSwitches(at string, g *Signal, v *violations) {
-	if g.Plan.Cycle == 0 {
-		return
+// horizon of the scenario; NaN, which no rate and no number of switches is compared with, where that is unsound.
+func (f *findings) horizon(s *Scenario) float64 {
+	if f.time.none() {
+		return s.Horizon
 	}
-	if g.Plan.Cycle > maxHorizon {
-		v.add(at+".Plan.Cycle", RuleRange, g.Plan.Cycle, fmt.Sprintf("at most %g s", float64(maxHorizon)))
+	return math.NaN()
+}
+
+// exitPlace is where the last segment ends.
+func (s *Scenario) exitPlace() float64 {
+	x := s.Origin
+	for i := range s.Segments {
+		x += s.Segments[i].Length
 	}
-	if n := s.Horizon / g.Plan.Cycle * float64(2*max(1, len(g.Plan.Greens))); n > maxSwitches {
-		v.add(at+".Plan.Cycle", RuleRange, g.Plan.Cycle, fmt.Sprintf("long enough that the signal switches at most %d times within the horizon", maxSwitches))
-	}
-	if math.Abs(g.Plan.Offset) > maxHorizon || math.Abs(g.Plan.Offset) > maxSwitches*g.Plan.Cycle {
-		v.add(at+".Plan.Offset", RuleRange, g.Plan.Offset, fmt.Sprintf("at most %g s and %d cycles in size", float64(maxHorizon), maxSwitches))
+	return x
+}
+
+// onRoad checks that a place is between entry and exit, give or take the roundings of who added up its lengths.
+func (v *violations) onRoad(field string, x, entry, exit float64) {
+	if v.finite(field, x) && (x < entry-samePlace || x > exit+samePlace) {
+		v.add(field, RuleRange, x, fmt.Sprintf("between %g and %g", entry, exit))
 	}
 }
 
@@ -182,38 +232,48 @@ func (s *Scenario) controlField(name string) string {
 	return ""
 }
 
-func (s *Scenario) validateEnds(v *violations) {
-	s.Entry.Demand.validate("Entry.Demand", s.Horizon, false, v)
-	s.Exit.Capacity.validate("Exit.Capacity", s.Horizon, true, v)
+func (s *Scenario) validateEnds(f *findings) {
+	v := &f.ends
+	s.Entry.Demand.validate("Entry.Demand", f.horizon(s), false, v)
+	s.Exit.Capacity.validate("Exit.Capacity", f.horizon(s), true, v)
 	if s.Entry.Excess != Waits && s.Entry.Excess != TurnsAway {
 		v.add("Entry.Excess", RuleRange, int(s.Entry.Excess), "Waits or TurnsAway")
-	}
-	if len(s.Entry.Demand) > maxInputPieces || len(s.Initial.Profile) > maxInputPieces {
-		v.add("Entry.Demand", RuleRange, len(s.Entry.Demand), fmt.Sprintf("at most %d pieces", maxInputPieces))
 	}
 }
 
 // validateClosedForm refuses schedules that change linearly in time next to a curved relation: what they send
 // out has no closed form.
-func (s *Scenario) validateClosedForm(nodes []node, segments []segment, v *violations) {
-	curved := func(seg int32) bool { return seg >= 0 && segments[seg].diagram.curved() }
-	for i := range nodes {
-		n := &nodes[i]
-		if (n.restriction.sloped() || n.demand.schedule.sloped()) && (curved(n.upSeg) || curved(n.downSeg)) {
-			v.add(s.scheduleField(n), RuleClosedForm, nil, "steps: a rate that changes linearly in time has no closed form on a curved flow-density relation")
+func (s *Scenario) validateClosedForm(l layout, v *violations) {
+	curved := func(seg int32) bool { return seg >= 0 && l.segments[seg].diagram.curved() }
+	last := len(l.nodes) - 1
+	for i := range l.nodes {
+		n := &l.nodes[i]
+		if !curved(n.upSeg) && !curved(n.downSeg) {
+			continue
+		}
+		for b := range s.Bottlenecks {
+			if s.Bottlenecks[b].Name == n.name {
+				v.steps(fmt.Sprintf("Bottlenecks[%d].Capacity", b), s.Bottlenecks[b].Capacity)
+			}
+		}
+		if i == 0 {
+			v.steps("Entry.Demand", s.Entry.Demand)
+		}
+		if i == last {
+			v.steps("Exit.Capacity", s.Exit.Capacity)
 		}
 	}
 }
 
-// scheduleField is the field path of the schedule that governs the node.
-func (s *Scenario) scheduleField(n *node) string {
-	if field := s.controlField(n.name); field != "" && n.restriction.sloped() {
-		return field + ".Capacity"
+// steps refuses a schedule that changes other than by steps, at its first such piece.
+func (v *violations) steps(field string, s Schedule) {
+	for i := range s {
+		if s[i].Slope != 0 {
+			v.add(fmt.Sprintf("%s[%d].Slope", field, i), RuleClosedForm, s[i].Slope,
+				"0, that is, steps: a rate that changes linearly in time has no closed form on a curved flow-density relation")
+			return
+		}
 	}
-	if n.demand.schedule.sloped() {
-		return "Entry.Demand"
-	}
-	return "Exit.Capacity"
 }
 
 // named checks the name of a bottleneck or signal: present, and not that of another node.

@@ -7,6 +7,9 @@ import (
 
 // validateInitialNumbers checks what can be said of the initial traffic without knowing the corridor.
 func (s *Scenario) validateInitialNumbers(v *violations) {
+	if n := len(s.Initial.Profile); n > maxPieces {
+		v.add("Initial.Profile", RuleRange, n, fmt.Sprintf("at most %d pieces", maxPieces))
+	}
 	for i, p := range s.Initial.Profile {
 		at := fmt.Sprintf("Initial.Profile[%d]", i)
 		v.finite(at+".Start", p.Start)
@@ -30,19 +33,25 @@ func (s *Scenario) validateInitialNumbers(v *violations) {
 	}
 }
 
-// validateInitial checks the initial traffic against the layout.
-func (s *Scenario) validateInitial(nodes []node, segments []segment, v *violations) {
-	s.validateProfile(segments, v)
+// validateInitial checks the initial traffic against the layout; scheduled says that all schedules and controls are
+// in it.
+func (s *Scenario) validateInitial(l layout, scheduled bool, v *violations) {
+	numbers := v.none()
+	s.validateProfile(l.segments, v)
 	if len(s.Initial.Profile) == 0 {
 		s.validateBackground(v)
 	}
-	s.validateStanding(nodes, segments, v)
+	s.validateStandingNames(l.nodes, v)
+	if scheduled && numbers {
+		s.validateStanding(l.nodes, l.segments, v)
+	}
 }
 
 func (s *Scenario) validateBackground(v *violations) {
+	flow := s.Initial.BackgroundFlow
 	for i := range s.Segments {
-		if c := s.Segments[i].Relation.Capacity(); s.Initial.BackgroundFlow > c*(1+closeness) {
-			v.add("Initial.BackgroundFlow", RuleRange, s.Initial.BackgroundFlow, fmt.Sprintf("at most %g, the capacity of %s", c, s.segmentName(i)))
+		if c := s.Segments[i].Relation.Capacity(); flow > c*(1+closeness) && !math.IsInf(flow, 1) {
+			v.add("Initial.BackgroundFlow", RuleRange, flow, fmt.Sprintf("at most %g, the capacity of %s", c, s.segmentName(i)))
 			return
 		}
 	}
@@ -53,14 +62,16 @@ func (s *Scenario) validateProfile(segments []segment, v *violations) {
 	start, end := segments[0].start, segments[len(segments)-1].end
 	for i, p := range profile {
 		at := fmt.Sprintf("Initial.Profile[%d]", i)
-		if math.Abs(p.Start-start) > samePlace {
+		if gap := math.Abs(p.Start - start); gap > samePlace && !math.IsInf(gap, 1) {
 			v.add(at+".Start", RuleCover, p.Start, fmt.Sprintf("%g, where the piece before it (or the corridor's entry) leaves off", start))
 		}
 		start = p.End
 		validateDensities(at, p, segments, v)
 	}
-	if n := len(profile); n > 0 && math.Abs(profile[n-1].End-end) > samePlace {
-		v.add(fmt.Sprintf("Initial.Profile[%d].End", n-1), RuleCover, profile[n-1].End, fmt.Sprintf("%g, the corridor's exit", end))
+	if n := len(profile); n > 0 && profile[n-1].End > profile[n-1].Start {
+		if gap := math.Abs(profile[n-1].End - end); gap > samePlace && !math.IsInf(gap, 1) {
+			v.add(fmt.Sprintf("Initial.Profile[%d].End", n-1), RuleCover, profile[n-1].End, fmt.Sprintf("%g, the corridor's exit", end))
+		}
 	}
 }
 
@@ -76,10 +87,22 @@ func validateDensities(at string, p ProfilePiece, segments []segment, v *violati
 			field   string
 			density float64
 		}{{".StartDensity", part.StartDensity}, {".EndDensity", part.EndDensity}} {
-			if end.density > seg.diagram.jam*(1+closeness) {
+			if end.density > seg.diagram.jam*(1+closeness) && !math.IsInf(end.density, 1) {
 				v.add(at+end.field, RuleRange, end.density, fmt.Sprintf("at most %g, the jam density of %s", seg.diagram.jam, seg.name))
 				return
 			}
+		}
+	}
+}
+
+func (s *Scenario) validateStandingNames(nodes []node, v *violations) {
+	for i, q := range s.Initial.Queues {
+		at := fmt.Sprintf("Initial.Queues[%d].Node", i)
+		switch n := nodeNamed(nodes, q.Node); {
+		case n < 0 && s.controlField(q.Node) == "": // the layout lacks controls of which something is wrong
+			v.add(at, RuleUnknown, q.Node, "the name of a node of the corridor")
+		case n == 0:
+			v.add(at, RuleRange, q.Node, "a node with road upstream of it; what waits before the entry is no part of the initial traffic")
 		}
 	}
 }
@@ -88,12 +111,7 @@ func (s *Scenario) validateStanding(nodes []node, segments []segment, v *violati
 	for i, q := range s.Initial.Queues {
 		at := fmt.Sprintf("Initial.Queues[%d]", i)
 		n := nodeNamed(nodes, q.Node)
-		if n < 0 {
-			v.add(at+".Node", RuleUnknown, q.Node, "the name of a node of the corridor")
-			continue
-		}
-		if n == 0 {
-			v.add(at+".Node", RuleRange, q.Node, "a node with road upstream of it; what waits before the entry is no part of the initial traffic")
+		if n <= 0 {
 			continue
 		}
 		if nodes[n].kind != SignalNode && nodes[n].heldFlow(segments) >= segments[n-1].diagram.capacity*(1-closeness) {
@@ -108,13 +126,12 @@ func (s *Scenario) validateStanding(nodes []node, segments []segment, v *violati
 			v.add(at, RuleFits, q, fmt.Sprintf("a queue that fits on the road behind the node; %g %s of it do not", rest, unit))
 		}
 	}
-	s.validateOverlap(nodes, segments, v)
+	if v.none() {
+		s.validateOverlap(nodes, segments, v)
+	}
 }
 
 func (s *Scenario) validateOverlap(nodes []node, segments []segment, v *violations) {
-	if len(v.list) > 0 {
-		return
-	}
 	var seen []standingPiece
 	for i, q := range s.Initial.Queues {
 		parts, _ := q.parts(nodes, segments)

@@ -84,7 +84,7 @@ func TestRefusedRoads(t *testing.T) {
 		{func(s *solver.Scenario) { s.Horizon = 0 }, "Horizon", solver.RulePositive, "0"},
 		{func(s *solver.Scenario) { s.Horizon = 1e-4 }, "Horizon", solver.RuleRange, "0.0001"},
 		{func(s *solver.Scenario) { s.Segments = nil }, "Segments", solver.RuleRequired, "0"},
-		{func(s *solver.Scenario) { s.Segments = make([]solver.Segment, 1<<16+1) }, "Segments", solver.RuleRequired, "65537"},
+		{func(s *solver.Scenario) { s.Segments = make([]solver.Segment, 1<<16+1) }, "Segments", solver.RuleRange, "65537"},
 		{func(s *solver.Scenario) { s.Segments[0].Length, s.Segments[1].Length = 6e6, 5e6 }, "Segments", solver.RuleRange, "1.1e+07"},
 		{func(s *solver.Scenario) { s.Segments[1].Length = 0 }, "Segments[1].Length", solver.RuleRange, "0"},
 		{func(s *solver.Scenario) { s.Segments[1].Length = -400 }, "Segments[1].Length", solver.RuleRange, "-400"},
