@@ -81,19 +81,19 @@ func (k *kernel) exhausts(id int32, s side, limit float64) float64 {
 
 // linesMeet: two characteristics of one profile meet at its focus; other straight bounds where they cross.
 func (k *kernel) linesMeet(r *region, b bound, up, down line) float64 {
-	if !r.uniform() && b.up >= 0 && b.down >= 0 {
-		return r.focus()
-	}
 	closing := up.speed - down.speed
 	from := max(up.t0, down.t0)
 	gap := down.at(from) - up.at(from)
 	if up.t0 == down.t0 {
 		gap = down.x0 - up.x0
 	}
-	if b.up >= 0 && b.down >= 0 && k.coincide(r, gap, closing) {
+	between := b.up >= 0 && b.down >= 0
+	switch {
+	case between && k.coincide(r, gap, closing):
 		return k.now
-	}
-	if closing <= 0 {
+	case between && !r.uniform():
+		return r.focus()
+	case closing <= 0:
 		return math.Inf(1)
 	}
 	return max(k.now, from+gap/closing)

@@ -80,7 +80,7 @@ func TestLeastCountIsFirstOrder(t *testing.T) {
 	for _, p := range bothWorlds(t) {
 		s := solver.Scenario{
 			Segments: []solver.Segment{{Length: 1000, Relation: p.solver}},
-			Entry:    solver.Entry{Demand: steps(0, 0.7*p.solver.Capacity())},
+			Entry:    solver.Entry{Demand: steps(0, 0.3*p.solver.Capacity())},
 			Horizon:  200,
 		}
 		for i, place := range []float64{311, 523, 847} {
