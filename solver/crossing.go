@@ -10,8 +10,7 @@ import "math"
 //
 // On the line the difference of the two sides' counts is a rational function of time, zero where the shock
 // is on the line. It is also zero where the other root of the path's quadratic is: there the difference falls
-// in place, that is, the upstream side, continued, is the denser one. Where the shock vanishes both roots are one,
-// which roundings may hide; the place at that time tells whether the line has been met.
+// in place, that is, the upstream side, continued, is the denser one.
 func (p *path) crossing(x0, t0 float64, l line, along side, direction, now, limit, slack float64) float64 {
 	e := l.at(t0) - x0
 	if l.t0 == t0 {
@@ -35,10 +34,33 @@ func (p *path) crossing(x0, t0 float64, l line, along side, direction, now, limi
 			return max(now, t0+T)
 		}
 	}
-	if p.until <= limit-t0 && direction*(e+l.speed*p.until-p.offset(p.until)) <= p.reach(along) {
-		return max(now, t0+p.until)
+	return max(now, t0+p.overlooked(e, l.speed, along, direction, max(0, now-t0), limit-t0))
+}
+
+// overlooked is the time of a meeting that the roots do not show, +Inf where there is none: where the shock is so weak
+// that both roots of the path are nearly one, roundings hide or spoil them. The place of the shock, which is free of
+// that, tells on which side of the line it is in the end.
+func (p *path) overlooked(e, speed float64, along side, direction, from, limit float64) float64 {
+	gap := func(T float64) float64 { return direction * (e + speed*T - p.offset(T)) }
+	to := min(p.until, limit*(1-closeness)) // the limit may be a focus, where there is no place to compute
+	if !p.connected(to) {
+		return math.Inf(1)
+	}
+	switch last := gap(to); {
+	case last < -p.near:
+		return fallingRoot(gap, from, to)
+	case to == p.until && last <= p.reach(along):
+		return to
 	}
 	return math.Inf(1)
+}
+
+// connected reports whether the path leads without a break to time T. Followed far beyond what its sides hold, it may run
+// off to infinity where their gradients become equal.
+func (p *path) connected(T float64) bool {
+	mU, mD := p.up.gradient(T), p.down.gradient(T)
+	steeper := mD > mU
+	return steeper == (p.down.gradient(0) > p.up.gradient(0)) || p.down.k-p.up.k > T*mD*p.relSpeed
 }
 
 // reach is within what distance the shock is taken to have met a line where it vanishes. The time of that is a
@@ -48,9 +70,9 @@ func (p *path) reach(along side) float64 {
 	jump := p.down.k - p.up.k
 	switch along {
 	case upSide:
-		return p.near + halfDigits*math.Abs(jump*p.up.s)
+		return p.near + halfDigits*math.Abs(jump/p.up.gradient(p.until))
 	case downSide:
-		return p.near + halfDigits*math.Abs(jump*p.down.s)
+		return p.near + halfDigits*math.Abs(jump/p.down.gradient(p.until))
 	}
 	return p.near
 }
@@ -82,8 +104,8 @@ func (p *path) setsOut(speed, direction float64) bool {
 	return (up-down)*direction > closeness*(math.Abs(up)+math.Abs(down))
 }
 
-// halfDigits is the relative error of a double root.
-const halfDigits = 0x1p-20
+// halfDigits is above the relative error of a double root, which is the root of closeness.
+const halfDigits = 0x1p-18
 
 func square(x float64) float64 { return x * x }
 

@@ -118,25 +118,32 @@ func (p *path) lastsUntil() float64 {
 	if jump == 0 {
 		return math.Inf(1)
 	}
-	square := jump * jump
+	square := jump * jump // at birth
 	switch up, down := p.up.uniform(), p.down.uniform(); {
 	case up:
 		return positive(square * p.down.s / (2*p.frameJumpFlow - square*p.down.d))
 	case down:
 		return positive(-square * p.up.s / (2*p.frameJumpFlow + square*p.up.d))
 	}
-	c := cubic{
-		square * p.up.s * p.down.s,
-		square*(p.up.s*p.down.d+p.up.d*p.down.s) - 2*(jump*p.relSpeed*p.up.s+p.frameJumpFlow*(p.up.s-p.down.s)),
-		square*p.up.d*p.down.d - 2*(jump*p.relSpeed*p.up.d+p.frameJumpFlow*(p.up.d-p.down.d)) + p.relSpeed*p.relSpeed,
-	}
-	if roots, n := c.roots(0, math.Inf(1)); n > 0 {
-		return roots[0]
-	}
-	return math.Inf(1)
+	return firstZero(
+		square*p.up.s*p.down.s,
+		square*(p.up.s*p.down.d+p.up.d*p.down.s)-2*(jump*p.relSpeed*p.up.s+p.frameJumpFlow*(p.up.s-p.down.s)),
+		square*p.up.d*p.down.d-2*(jump*p.relSpeed*p.up.d+p.frameJumpFlow*(p.up.d-p.down.d))+p.relSpeed*p.relSpeed,
+	)
 }
 
-// positive is t, or +Inf where t is not after 0.
+// firstZero is the first positive root of c + b t + a t². A double root that roundings make complex is one: both
+// sides of the shock are used up there at once.
+func firstZero(c, b, a float64) float64 {
+	disc := b*b - 4*a*c
+	if disc < -closeness*b*b {
+		return math.Inf(1)
+	}
+	q := -0.5 * (b + math.Copysign(math.Sqrt(max(0, disc)), b))
+	return min(positive(q/a), positive(c/q))
+}
+
+// positive is t, or +Inf where t is not a time after 0.
 func positive(t float64) float64 {
 	if t > 0 {
 		return t
