@@ -56,11 +56,10 @@ func (p *path) overlooked(e, speed float64, along side, direction, from, limit f
 }
 
 // connected reports whether the path leads without a break to time T. Followed far beyond what its sides hold, it may run
-// off to infinity where their gradients become equal.
+// off to infinity when their gradients become equal.
 func (p *path) connected(T float64) bool {
-	mU, mD := p.up.gradient(T), p.down.gradient(T)
-	steeper := mD > mU
-	return steeper == (p.down.gradient(0) > p.up.gradient(0)) || p.down.k-p.up.k > T*mD*p.relSpeed
+	alike := (p.down.s - p.up.s) / (p.up.d - p.down.d)
+	return !(alike > 0 && alike < T) || p.down.k-p.up.k > alike*p.down.gradient(alike)*p.relSpeed
 }
 
 // reach is within what distance the shock is taken to have met a line where it vanishes. The time of that is a
