@@ -25,8 +25,7 @@ func (w *walker) step() leg {
 		}
 		w.t = max(w.t, until)
 		if w.t >= died {
-			w.x = l.place(w.t)
-			w.relocate()
+			w.relocate(&l)
 			break
 		}
 	}
@@ -35,16 +34,13 @@ func (w *walker) step() leg {
 }
 
 // relocate finds the region of a vehicle that is at the horizon, or rode along the bound of a region to the
-// region's end. It looks a hair later, when whatever follows there has begun; should that be the same region, the
-// vehicle has to wait for that hair, so that every step leads on.
-func (w *walker) relocate() {
+// region's end. It goes on for a hair, to when whatever follows there has begun and all that happens at the same
+// time is over.
+func (w *walker) relocate(l *leg) {
 	s := w.sol
-	later := min(s.horizon, w.t+closeness*s.horizon)
-	was := w.region
-	_, w.region, _ = s.locate(w.x, later)
-	if w.region == was {
-		w.t = later
-	}
+	w.t = min(s.horizon, w.t+closeness*s.horizon)
+	w.x = min(l.place(w.t), s.segments[s.regions[w.region].seg].end)
+	_, w.region, _ = s.locate(w.x, w.t)
 }
 
 // cross takes the vehicle over a front or node.
