@@ -8,6 +8,8 @@ type walker struct {
 	x, t   float64
 	region int32
 	left   bool
+	// settled is when all is over that happened at the time at which the region was found: its bounds count from then.
+	settled float64
 }
 
 // step takes the vehicle to the end of the region that it is in.
@@ -16,7 +18,7 @@ func (w *walker) step() leg {
 	l := s.newLeg(w.region, w.x, w.t)
 	died := min(s.bounds[w.region].died, s.horizon)
 	for {
-		limit, until := s.limitAt(w.region, w.t)
+		limit, until := s.limitAt(w.region, max(w.t, w.settled))
 		until = min(until, died)
 		t := s.crossingTime(&l, limit, w.t, until)
 		if !math.IsInf(t, 1) {
@@ -25,7 +27,8 @@ func (w *walker) step() leg {
 		}
 		w.t = max(w.t, until)
 		if w.t >= died {
-			w.relocate(&l)
+			w.x = l.place(w.t)
+			w.relocate()
 			break
 		}
 	}
@@ -34,13 +37,16 @@ func (w *walker) step() leg {
 }
 
 // relocate finds the region of a vehicle that is at the horizon, or rode along the bound of a region to the
-// region's end. It goes on for a hair, to when whatever follows there has begun and all that happens at the same
-// time is over.
-func (w *walker) relocate(l *leg) {
+// region's end. It looks a hair later, when whatever follows there has begun; should that be the same region, the
+// vehicle has to wait for that hair, so that every step leads on.
+func (w *walker) relocate() {
 	s := w.sol
-	w.t = min(s.horizon, w.t+closeness*s.horizon)
-	w.x = min(l.place(w.t), s.segments[s.regions[w.region].seg].end)
-	_, w.region, _ = s.locate(w.x, w.t)
+	w.settled = min(s.horizon, w.t+closeness*s.horizon)
+	was := w.region
+	_, w.region, _ = s.locate(w.x, w.settled)
+	if w.region == was {
+		w.t = w.settled
+	}
 }
 
 // cross takes the vehicle over a front or node.
