@@ -48,11 +48,25 @@ func (p *path) overlooked(e, speed float64, along side, direction, from, limit f
 	}
 	switch last := gap(to); {
 	case last < -p.near:
-		return fallingRoot(gap, from, to)
+		return fallingRoot(gap, ahead(gap, from, to), to)
 	case to == p.until && last <= p.reach(along):
 		return to
 	}
 	return math.Inf(1)
+}
+
+// ahead is a time from which on a gap that is closed at the end is open: the start, or where that is a place at which
+// both are, soon after; the start again where the gap never opens.
+func ahead(gap func(float64) float64, from, to float64) float64 {
+	if gap(from) > 0 {
+		return from
+	}
+	for T := to; T > from+closeness*(to-from); T = 0.5 * (from + T) {
+		if gap(T) > 0 {
+			return T
+		}
+	}
+	return from
 }
 
 // connected reports whether the path leads without a break to time T. Followed far beyond what its sides hold, it may run
