@@ -42,11 +42,15 @@ func checkQuestions(req *pb.SolveRequest, limits Limits, bad *violations) {
 	}
 }
 
-// corridor measures how far the road reaches.
+// corridor measures how far the road reaches; nowhere, where a length is at fault.
 func (c *questionChecker) corridor(s *pb.Scenario) {
 	c.entry = s.GetOriginM()
 	c.exit = c.entry
 	for _, seg := range s.GetSegments() {
+		if !(seg.GetLengthM() > 0) {
+			c.exit = c.entry
+			return
+		}
 		c.exit += seg.GetLengthM()
 	}
 }

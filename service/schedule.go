@@ -79,7 +79,7 @@ func (c *converter) slope(p solver.SchedulePiece, wanted *float64, end float64, 
 	if *wanted < 0 {
 		c.bad.add(field, pb.FieldReason_FIELD_REASON_NOT_NEGATIVE, printNumber(*wanted), "0 or more")
 	}
-	if end == c.request.GetScenario().GetHorizonS() && p.Start >= end {
+	if horizon := c.request.GetScenario().GetHorizonS(); end == horizon && horizon > 0 && p.Start >= end {
 		c.bad.add(field, pb.FieldReason_FIELD_REASON_CONFLICT, printNumber(*wanted),
 			"absent: this step starts at or after the horizon, so it has no end")
 	}

@@ -84,7 +84,9 @@ type Sample struct {
 	Count float64
 }
 
-// At answers for the point (x, t). Errors: *[InvalidError] outside the corridor or the solved time.
+// At answers for the point (x, t). Within a micrometre of a node it answers as at the node, whose count is taken on its
+// upstream side: there the count is off by at most a micrometre of jam. Errors: *[InvalidError] outside the corridor or
+// the solved time.
 func (s *Solution) At(x, t float64) (Sample, error) {
 	if err := s.checkPoint(x, t); err != nil {
 		return Sample{}, err
