@@ -125,6 +125,7 @@ func link(nodes []node, segments []segment, horizon float64) {
 		for _, seg := range segments[max(0, i-1):min(i+1, len(segments))] {
 			n.flowTolerance = max(n.flowTolerance, seg.flowTolerance)
 		}
+		n.slack = closeness * horizon
 		n.slopeTolerance = n.flowTolerance / horizon
 	}
 }

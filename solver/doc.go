@@ -41,7 +41,7 @@
 //
 // # Reading order
 //
-// relation.go, diagram.go, region.go, front.go, riemann.go, meeting.go, crossing.go, node.go, offer.go, send.go, plan.go,
+// relation.go, diagram.go, region.go, front.go, riemann.go, meeting.go, crossing.go, overlooked.go, node.go, offer.go, send.go, plan.go,
 // kernel.go, merge.go; then scenario.go,
 // build.go and initial.go for what goes in, and solution.go, fronts.go, queues.go, trajectory.go, trips.go,
 // characteristic.go and totals.go for what can be asked.

@@ -67,7 +67,9 @@ type path struct {
 	// used up before; past it the formula follows a root that is no shock.
 	until float64
 	// near [m] is within which the shock is taken to have met a line where it vanishes.
-	near               float64
+	near float64
+	// exhausts are the times at which the profiles on the two sides are used up; NaN while nobody has asked.
+	exhausts           [2]float64
 	upPiece, downPiece int32
 }
 
@@ -75,6 +77,7 @@ type path struct {
 // density below the segment's tolerance is taken as none: the shock grows from nothing.
 func newPath(u, d *region, ku, kd, t float64, seg *segment) path {
 	p := path{up: u.at(ku, t), down: d.at(kd, t), upPiece: u.piece, downPiece: d.piece}
+	p.exhausts = [2]float64{math.NaN(), math.NaN()}
 	if math.Abs(p.down.k-p.up.k) <= seg.densityTolerance {
 		p.down.k = p.up.k
 	}

@@ -60,23 +60,26 @@ func (k *kernel) limit(b bound, r *region) float64 {
 
 // exhausts is when a shock has consumed the last density of the profile on one side of it, +Inf where it never
 // does. Up to then the densities beside it lie on the relation, so that it is a true shock and consumes more.
-func (k *kernel) exhausts(id int32, s side, limit float64) float64 {
+func (k *kernel) exhausts(id int32, s side) float64 {
 	f := &k.fronts[id]
 	p := &k.paths[f.path]
-	l, last := &p.up, k.regions[f.up].upLabel
+	known := &p.exhausts[s]
+	if !math.IsNaN(*known) {
+		return *known
+	}
+	up, down := &k.regions[f.up], &k.regions[f.down]
+	l, last, direction := &p.up, up.upLabel, -1.0
 	if s == downSide {
-		l, last = &p.down, k.regions[f.down].downLabel
+		l, last, direction = &p.down, down.downLabel, 1
 	}
-	if l.uniform() {
-		return math.Inf(1)
+	*known = math.Inf(1)
+	if !l.uniform() {
+		limit := min(k.horizon*(1+closeness), min(up.focus(), down.focus()))
+		dk := last - l.k
+		edge := line{x0: f.x0 + dk*l.s, t0: f.t0, speed: l.c + l.d*dk}
+		*known = p.crossing(f.x0, f.t0, edge, s, direction, f.t0, limit, 0)
 	}
-	dk := last - l.k
-	edge := line{x0: f.x0 + dk*l.s, t0: f.t0, speed: l.c + l.d*dk}
-	direction := -1.0
-	if s == downSide {
-		direction = 1
-	}
-	return p.crossing(f.x0, f.t0, edge, s, direction, f.t0, limit, 0)
+	return *known
 }
 
 // linesMeet: two characteristics of one profile meet at its focus; other straight bounds where they cross.
@@ -114,8 +117,8 @@ func (k *kernel) labelsMeet(r *region, up, down int32, limit float64) float64 {
 	if gap(k.now) <= 0 {
 		return k.now
 	}
-	consumed := min(r.focus(), min(k.exhausts(up, downSide, limit), k.exhausts(down, upSide, limit)))
-	limit = min(limit, min(k.exhausts(up, upSide, limit), k.exhausts(down, downSide, limit)))
+	consumed := min(r.focus(), min(k.exhausts(up, downSide), k.exhausts(down, upSide)))
+	limit = min(limit, min(k.exhausts(up, upSide), k.exhausts(down, downSide)))
 	if consumed > limit && gap(limit) > 0 {
 		return math.Inf(1)
 	}
@@ -128,7 +131,7 @@ func (k *kernel) labelsMeet(r *region, up, down int32, limit float64) float64 {
 // hold no meeting; the others are halved, earliest first.
 func (k *kernel) pathsMeet(up, down int32, limit float64) float64 {
 	a, b := &k.fronts[up], &k.fronts[down]
-	limit = min(limit, min(k.exhausts(up, upSide, limit), k.exhausts(down, downSide, limit)))
+	limit = min(limit, min(k.exhausts(up, upSide), k.exhausts(down, downSide)))
 	p, q := k.gapAt(a, b, k.now), k.gapAt(a, b, limit)
 	if p.gap <= 0 && p.downSpeed < p.upSpeed {
 		return k.now

@@ -55,6 +55,7 @@ type node struct {
 	// Flows at the node, and their slopes, that differ by less count as equal: slopes where they would not add up
 	// to a different flow by the horizon.
 	flowTolerance, slopeTolerance float64
+	slack                         float64 // difference of times that counts as none
 
 	excess  Excess
 	waiting bool // an entry queue stands
@@ -177,12 +178,13 @@ func (k *kernel) countAt(n *node) float64 {
 	return k.regions[n.down].count(n.x, k.now)
 }
 
-// less compares two rates: by value, and where the values agree by what they are about to do.
+// less compares two rates: by value, and where the values agree, or will within a time that counts as none, by what
+// they are about to do.
 func (n *node) less(a, b rate) bool {
 	if math.IsInf(a.value, 1) || math.IsInf(b.value, 1) {
 		return a.value < b.value
 	}
-	if d := a.value - b.value; math.Abs(d) > n.flowTolerance {
+	if d := a.value - b.value; math.Abs(d) > max(n.flowTolerance, n.slack*math.Abs(a.slope-b.slope)) {
 		return d < 0
 	}
 	return a.slope < b.slope-n.slopeTolerance
