@@ -2,12 +2,17 @@ package solver
 
 import "math"
 
-// meeting is when the bounds of a live region meet, +Inf where they do not before the horizon.
+// meeting is when the bounds of a live region meet, +Inf where they do not before the horizon. Those of a profile
+// meet at its focus at the latest: nothing of it is left then.
 func (k *kernel) meeting(g int32) float64 {
 	b := k.bounds[g]
 	if b.up < 0 && b.down < 0 {
 		return math.Inf(1)
 	}
+	return max(k.now, min(k.boundsMeet(g, b), k.regions[g].focus()))
+}
+
+func (k *kernel) boundsMeet(g int32, b bound) float64 {
 	upLine, upPath := k.boundary(b.up)
 	downLine, downPath := k.boundary(b.down)
 	r := &k.regions[g]
@@ -68,21 +73,21 @@ func (k *kernel) exhausts(id int32, s side) float64 {
 		return *known
 	}
 	up, down := &k.regions[f.up], &k.regions[f.down]
-	l, last, direction := &p.up, up.upLabel, -1.0
+	l, last, direction, focus := &p.up, up.upLabel, -1.0, up.focus()
 	if s == downSide {
-		l, last, direction = &p.down, down.downLabel, 1
+		l, last, direction, focus = &p.down, down.downLabel, 1, down.focus()
 	}
-	*known = math.Inf(1)
+	*known = focus
 	if !l.uniform() {
 		limit := min(k.horizon*(1+closeness), min(up.focus(), down.focus()))
 		dk := last - l.k
 		edge := line{x0: f.x0 + dk*l.s, t0: f.t0, speed: l.c + l.d*dk}
-		*known = p.crossing(f.x0, f.t0, edge, s, direction, f.t0, limit, 0)
+		*known = min(focus, p.crossing(f.x0, f.t0, edge, s, direction, f.t0, limit, 0))
 	}
 	return *known
 }
 
-// linesMeet: two characteristics of one profile meet at its focus; other straight bounds where they cross.
+// linesMeet: straight bounds meet where they cross.
 func (k *kernel) linesMeet(r *region, b bound, up, down line) float64 {
 	closing := up.speed - down.speed
 	from := max(up.t0, down.t0)
@@ -95,7 +100,7 @@ func (k *kernel) linesMeet(r *region, b bound, up, down line) float64 {
 	case between && k.coincide(r, gap, closing):
 		return k.now
 	case between && !r.uniform():
-		return r.focus()
+		return math.Inf(1) // characteristics of one profile meet only at its focus
 	case closing <= 0:
 		return math.Inf(1)
 	}
@@ -117,7 +122,7 @@ func (k *kernel) labelsMeet(r *region, up, down int32, limit float64) float64 {
 	if gap(k.now) <= 0 {
 		return k.now
 	}
-	consumed := min(r.focus(), min(k.exhausts(up, downSide), k.exhausts(down, upSide)))
+	consumed := min(k.exhausts(up, downSide), k.exhausts(down, upSide))
 	limit = min(limit, min(k.exhausts(up, upSide), k.exhausts(down, downSide)))
 	if consumed > limit && gap(limit) > 0 {
 		return math.Inf(1)
