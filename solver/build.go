@@ -165,7 +165,7 @@ func (k *kernel) reserve() {
 	k.fronts = make([]front, 0, 4*n)
 	k.limits = make([]bounding, 0, 5*n)
 	k.steps = make([]step, 0, 4*n)
-	k.agenda = make(agenda, 0, 64)
+	k.agenda = newAgenda(len(k.nodes), 3*n)
 	if curved {
 		k.paths = make([]path, 0, 2*n)
 	}
@@ -192,7 +192,7 @@ func (k *kernel) start(seg int32, pieces []ProfilePiece, count float64) float64 
 				if k.connect(last, id, k.regions[last].downLabel, g.region.upLabel, g.region.x0, 0, count) {
 					k.record(last, id, born)
 				} else {
-					k.regions, k.bounds = k.regions[:id], k.bounds[:id] // one uniform state
+					k.withdraw() // one uniform state
 					id = last
 				}
 			}

@@ -56,7 +56,6 @@ func newSegment(name string, start, end float64, d *diagram) segment {
 type bound struct {
 	up, down int32
 	limits   int32   // latest entry of this region in kernel.limits, -1 for none
-	stamp    uint32  // of its event on the agenda
 	due      float64 // when it will be used up
 	died     float64 // when it was, +Inf while it lives
 }
@@ -81,7 +80,14 @@ func (k *kernel) addRegion(g region) int32 {
 	id := int32(len(k.regions))
 	k.regions = append(k.regions, g)
 	k.bounds = append(k.bounds, bound{died: math.Inf(1), due: math.Inf(1), limits: -1})
+	k.agenda.regions = append(k.agenda.regions, -1)
 	return id
+}
+
+// withdraw takes back the region that was added last, before anything bounds it.
+func (k *kernel) withdraw() {
+	last := len(k.regions) - 1
+	k.regions, k.bounds, k.agenda.regions = k.regions[:last], k.bounds[:last], k.agenda.regions[:last]
 }
 
 // addFront puts a front between two regions that are, from now on, neighbours.
@@ -103,14 +109,8 @@ func (k *kernel) boundDown(g, bound int32) {
 
 // run processes events until the horizon.
 func (k *kernel) run(ctx context.Context, budget Budget) error {
-	for len(k.agenda) > 0 {
+	for len(k.agenda.events) > 0 {
 		e := k.agenda.pop()
-		if e.time > k.horizon {
-			return nil
-		}
-		if !k.current(e) {
-			continue
-		}
 		k.now = max(k.now, e.time)
 		k.interactions++
 		if err := k.check(ctx, budget); err != nil {
@@ -126,13 +126,6 @@ func (k *kernel) run(ctx context.Context, budget Budget) error {
 		}
 	}
 	return nil
-}
-
-func (k *kernel) current(e event) bool {
-	if e.target < 0 {
-		return k.nodes[^e.target].stamp == e.stamp
-	}
-	return k.bounds[e.target].stamp == e.stamp
 }
 
 // contextInterval is how many interactions pass between looks at the context: some 0.1 ms of work.
@@ -155,7 +148,7 @@ func (k *kernel) check(ctx context.Context, budget Budget) error {
 func (k *kernel) bytes() int64 {
 	size := cap(k.regions)*int(unsafe.Sizeof(region{})) + cap(k.bounds)*int(unsafe.Sizeof(bound{})) +
 		cap(k.fronts)*int(unsafe.Sizeof(front{})) + cap(k.paths)*int(unsafe.Sizeof(path{})) +
-		cap(k.steps)*int(unsafe.Sizeof(step{})) + cap(k.limits)*int(unsafe.Sizeof(bounding{})) + cap(k.agenda)*int(unsafe.Sizeof(event{}))
+		cap(k.steps)*int(unsafe.Sizeof(step{})) + cap(k.limits)*int(unsafe.Sizeof(bounding{})) + cap(k.agenda.regions)*4
 	for i := range k.nodes {
 		size += cap(k.nodes[i].history) * int(unsafe.Sizeof(passage{}))
 	}

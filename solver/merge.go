@@ -73,7 +73,7 @@ func (k *kernel) retire(first, last int32, ends FrontEnd, into int32) {
 	for g := first; ; g = k.fronts[k.bounds[g].down].down {
 		b := &k.bounds[g]
 		b.died = k.now
-		b.stamp++
+		k.agenda.drop(g)
 		k.endFront(b.down, ends, into)
 		if g == last {
 			return
@@ -93,7 +93,7 @@ func (k *kernel) endFront(id int32, ends FrontEnd, into int32) {
 func (k *kernel) absorb(up, down int32) {
 	b := &k.bounds[down]
 	b.died = k.now
-	b.stamp++
+	k.agenda.drop(down)
 	k.boundDown(up, b.down)
 	if b.down >= 0 {
 		k.fronts[b.down].up = up
@@ -124,9 +124,10 @@ func (k *kernel) reschedule(first int32) {
 
 func (k *kernel) schedule(g int32) {
 	b := &k.bounds[g]
-	b.stamp++
 	b.due = k.meeting(g)
 	if b.due <= k.horizon {
-		k.agenda.push(event{time: b.due, target: g, stamp: b.stamp})
+		k.agenda.set(g, b.due)
+	} else {
+		k.agenda.drop(g)
 	}
 }

@@ -60,7 +60,6 @@ type node struct {
 	excess  Excess
 	waiting bool // an entry queue stands
 	alike   bool // the same relation on both sides
-	stamp   uint32
 	due     float64
 	governs Governor
 	history []passage
@@ -138,7 +137,7 @@ var unscheduled = math.NaN()
 func (k *kernel) bury(region, front int32) {
 	b := &k.bounds[region]
 	b.died, b.due = k.now, math.Inf(1)
-	b.stamp++
+	k.agenda.drop(region)
 	k.endFront(front, AtNode, -1)
 }
 

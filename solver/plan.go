@@ -7,7 +7,6 @@ import "math"
 // entry queue is gone. Waves that arrive are events of their regions.
 func (k *kernel) plan(index int32) {
 	n := &k.nodes[index]
-	n.stamp++
 	n.due = min(k.changeOfGovernor(n), k.cornerReached(n))
 	if n.waiting {
 		n.due = min(n.due, k.queueGone(n))
@@ -16,7 +15,9 @@ func (k *kernel) plan(index int32) {
 	n.due = max(n.due, k.simultaneous())
 	n.due = min(n.due, min(n.capacity.next(), n.demand.next()))
 	if n.due <= k.horizon {
-		k.agenda.push(event{time: n.due, target: ^index, stamp: n.stamp})
+		k.agenda.set(^index, n.due)
+	} else {
+		k.agenda.drop(^index)
 	}
 }
 

@@ -35,7 +35,7 @@ func (k *kernel) put(index int32, s side, fresh region, old int32, count float64
 	ku, kd := k.labelAt(n, up, upSide), k.labelAt(n, down, downSide)
 	if !k.connect(up, down, ku, kd, n.x, k.now, count) {
 		// The flows differed by a rounding, the densities do not: old carries the flow after all.
-		k.regions, k.bounds = k.regions[:g], k.bounds[:g]
+		k.withdraw()
 		return
 	}
 	k.keepAway(born, direction)
