@@ -26,7 +26,7 @@ func (k *kernel) boundsMeet(g int32, b bound) float64 {
 	case r.uniform():
 		return k.pathsMeet(b.up, b.down, k.limit(b, r))
 	default:
-		return k.labelsMeet(r, b.up, b.down, k.limit(b, r))
+		return k.labelsMeet(b.up, b.down, k.limit(b, r))
 	}
 }
 
@@ -116,7 +116,7 @@ func (k *kernel) coincide(r *region, gap, closing float64) bool {
 // labelsMeet: both bounds of a profile are curved shocks. They only ever consume its characteristics, so the
 // span of densities between them falls to zero exactly once. When one of them has consumed all, or at the
 // profile's focus, that has happened for certain.
-func (k *kernel) labelsMeet(r *region, up, down int32, limit float64) float64 {
+func (k *kernel) labelsMeet(up, down int32, limit float64) float64 {
 	a, b := &k.fronts[up], &k.fronts[down]
 	gap := func(t float64) float64 { return k.place(b, t) - k.place(a, t) }
 	if gap(k.now) <= 0 {
