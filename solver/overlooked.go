@@ -54,6 +54,3 @@ func (p *path) reach(along side) float64 {
 	}
 	return p.near
 }
-
-// halfDigits is above the relative error of a double root, which is the root of closeness.
-const halfDigits = 0x1p-18

@@ -10,6 +10,11 @@ package solver
 // times, never with the number at hand, so that it means the same everywhere in a scenario.
 const closeness = 0x1p-40
 
+// halfDigits is above the relative error of a double root of a quadratic that is itself right to closeness: 2^-20, the
+// root of that, times four for what the place computed there adds. It is used only where a shock vanishes, and what
+// it lets pass changes a count by its square.
+const halfDigits = 0x1p-18
+
 // consistency is the relative difference up to which over-determined inputs (all four parameters of a
 // triangular relation, say) count as agreeing: callers pass rounded decimals, 1e-6 forgives six digits.
 const consistency = 1e-6
