@@ -90,6 +90,8 @@ func TestSolverWordsComeOutInContractUnits(t *testing.T) {
 		{"between 0.01 and 10 m", "a.length_m", "between 0.01 and 10 m"},
 		{"it reaches -0.5 veh/s at 20 s", "a.end_flow_veh_per_h", "it reaches -1800 veh/h at 20 s"},
 		{"more than 0", "a.flow_veh_per_h", "more than 0"},
+		{`at most 0.125, the jam density of "Road 66"`, "a.start_density_veh_per_km", `at most 125 veh/km, the jam density of "Road 66"`},
+		{`at most 0.5, the capacity of "say \"at 5\" 7"`, "a.flow_veh_per_h", `at most 1800 veh/h, the capacity of "say \"at 5\" 7"`},
 		{`none where "A1" stands`, "a.flow_veh_per_h", `none where "A1" stands`},
 	} {
 		if got := inContractUnits(c.text, c.field); got != c.want {

@@ -30,7 +30,22 @@ func inContractUnits(text, field string) string {
 	if text, done := withSharedUnit(text, field); done {
 		return text
 	}
-	bare := unitOf(field)
+	var out strings.Builder
+	rest := 0
+	for _, name := range quoted.FindAllStringIndex(text, -1) {
+		out.WriteString(convertQuantities(text[rest:name[0]], unitOf(field)))
+		out.WriteString(text[name[0]:name[1]])
+		rest = name[1]
+	}
+	out.WriteString(convertQuantities(text[rest:], unitOf(field)))
+	return out.String()
+}
+
+// quoted finds the names in a text, whose numbers are none of ours.
+var quoted = regexp.MustCompile(`"(?:[^"\\]|\\.)*"`)
+
+// convertQuantities converts all quantities of a text; bare is the unit of those without one.
+func convertQuantities(text, bare string) string {
 	return quantity.ReplaceAllStringFunc(text, func(found string) string {
 		parts := quantity.FindStringSubmatch(found)
 		unit := parts[3]

@@ -4,6 +4,7 @@ import (
 	"context"
 	"errors"
 	"fmt"
+	"math"
 	"testing"
 	"time"
 
@@ -56,14 +57,18 @@ func TestBudgetOfInteractions(t *testing.T) {
 	}
 }
 
-// A solve that would hold more than its budget of memory is given up on the way.
+// A solve that would hold more than its budget of memory is given up on the way, and before it begins where what is
+// laid out holds more already.
 func TestBudgetOfMemory(t *testing.T) {
 	for name, r := range benchRelations(t) {
-		s := arterial(r, 8, 20)
+		s := arterial(r, 32, 40)
 		whole := mustSolve(t, s).Stats()
-		e := limitOf(t, s, solver.Budget{Memory: whole.Bytes / 2})
-		if e.Limit != "bytes" || e.Max != whole.Bytes/2 || !(e.Reached > 0 && e.Reached < s.Horizon) {
-			t.Errorf("%s: %+v, want the limit of %d bytes, within (0, %g) s", name, e, whole.Bytes/2, s.Horizon)
+		e := limitOf(t, s, solver.Budget{Memory: whole.Bytes - 1})
+		if e.Limit != "bytes" || e.Max != whole.Bytes-1 || !(e.Reached > 0 && e.Reached <= s.Horizon) {
+			t.Errorf("%s: %+v, want the limit of %d bytes, within (0, %g] s", name, e, whole.Bytes-1, s.Horizon)
+		}
+		if e := limitOf(t, s, solver.Budget{Memory: 100_000}); e.Reached != 0 {
+			t.Errorf("%s: %+v, want the limit before the first second", name, e)
 		}
 		if _, err := solver.Solve(context.Background(), s, solver.Budget{Memory: whole.Bytes}); err != nil {
 			t.Errorf("%s: with as much memory as it needs: %v", name, err)
@@ -86,6 +91,19 @@ func TestNoSolutionIsLargerThanItsBudget(t *testing.T) {
 		if got := solution.Stats().Bytes; got > memory {
 			t.Errorf("a budget of %d bytes gives a solution of %d", memory, got)
 		}
+	}
+}
+
+// Short cycles unfold to long schedules: signals together are held to one number of switches, so that a short
+// request does not fill the memory before any budget is looked at.
+func TestSignalsTogetherAreBounded(t *testing.T) {
+	s := solver.Scenario{Segments: []solver.Segment{exactRoad(t, 1000)}, Horizon: 600}
+	for i := range 16 {
+		s.Signals = append(s.Signals, solver.Signal{Name: string(rune('a' + i)), Place: float64(10 + i), SaturationFlow: math.Inf(1),
+			Plan: solver.Plan{Cycle: 0.00115, Greens: []solver.Window{{End: 0.000575}}}})
+	}
+	if list := violationsOf(t, s.Validate()); len(list) != 1 || !names(list, "Signals", solver.RuleRange, "1.6695652e+07") {
+		t.Errorf("violations %+v", list)
 	}
 }
 

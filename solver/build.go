@@ -154,7 +154,7 @@ func (k *kernel) reserve() {
 	for i := range k.nodes {
 		switches := len(k.nodes[i].restriction)
 		n += 2 + switches
-		k.nodes[i].history = make([]passage, 0, 4+2*switches)
+		k.nodes[i].history = make([]passage, 0, 4+2*min(switches, maxReserve))
 	}
 	for i := range k.segments {
 		curved = curved || k.segments[i].diagram.curved()

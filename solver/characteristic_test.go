@@ -56,6 +56,25 @@ func TestCharacteristicsRunIntoTheTail(t *testing.T) {
 	})
 }
 
+// Traffic at capacity arrives at a queue: its tail runs along the congested branch, 1500 - 5 t, and is a shock all the
+// same. Waves at 20 m/s run into it: 500 + 20 (t-50) = 1500 - 5 t at 80 s.
+func TestCharacteristicsAtCapacityRunIntoTheTail(t *testing.T) {
+	r := must(solver.Triangular(solver.TriangularParams{FreeSpeed: 20, WaveSpeed: 5, JamDensity: 0.125}))(t)
+	s := must(solver.Solve(t.Context(), solver.Scenario{
+		Segments:    []solver.Segment{{Length: 2000, Relation: r}},
+		Bottlenecks: []solver.Bottleneck{{Name: "b", Place: 1500, Capacity: solver.Schedule{{Rate: 0.25}}}},
+		Entry:       solver.Entry{Demand: solver.Schedule{{Rate: 0.5}}},
+		Initial:     solver.Initial{BackgroundFlow: 0.5},
+		Horizon:     300,
+	}, solver.Budget{}))(t)
+	followed(t, s, 500, 50, solver.Merged, point(500, 50), point(1100, 80))
+	for _, f := range s.Fronts() {
+		if f.Birth == point(1500, 0) && f.End.Place < 1500 && f.Kind != solver.Shock {
+			t.Errorf("the tail is a %v", f.Kind)
+		}
+	}
+}
+
 // On a shock there is only the place itself; on the edge of a fan the wave is the edge.
 func TestCharacteristicsOnAFront(t *testing.T) {
 	s := redThenGreen(t)

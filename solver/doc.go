@@ -32,8 +32,9 @@
 // congested. Where demand and capacity are equal, demand governs and no queue forms; where capacity and downstream
 // supply are equal, the node governs. A queue belongs to the node where it formed; see [Queue]. A question exactly on
 // a front returns both sides. The count at a node is that of its upstream side; at the entry, the vehicles that
-// entered. Delay refers to the speed at density zero; waiting before the entry is reported beside it. Two places
-// closer than a micrometre are one place.
+// entered. Delay refers to the speed at density zero; waiting before the entry is reported beside it. A state at a
+// corner of the relation has the waves of the piece below: where traffic at capacity runs into a queue, its tail is a
+// shock. Two places closer than a micrometre are one place.
 //
 // Not held yet, and refused: ramps, queue discharge below capacity, slow vehicles, relations that are not piecewise
 // quadratic, rates that change linearly in time next to a curved relation, and a fan that crosses from a curved
@@ -41,8 +42,9 @@
 //
 // # Reading order
 //
-// relation.go, diagram.go, region.go, front.go, riemann.go, meeting.go, crossing.go, overlooked.go, node.go, offer.go, send.go, plan.go,
-// kernel.go, merge.go; then scenario.go,
-// build.go and initial.go for what goes in, and solution.go, fronts.go, queues.go, trajectory.go, trips.go,
-// characteristic.go and totals.go for what can be asked.
+// relation.go, diagram.go, region.go, front.go, riemann.go, meeting.go, crossing.go and overlooked.go with cubic.go,
+// node.go, offer.go, send.go, plan.go, agenda.go, kernel.go, merge.go; then scenario.go, schedule.go, timetable.go,
+// build.go and initial.go for what goes in, validate.go for what may; and solution.go, index.go, fronts.go, queues.go
+// (strips.go, queue_paths.go, peaks.go), trajectory.go (walk.go), polyline.go, trips.go, characteristic.go and
+// totals.go for what can be asked.
 package solver

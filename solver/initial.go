@@ -85,6 +85,9 @@ func (q StandingQueue) parts(nodes []node, segments []segment) (out []standingPi
 	rest = q.Length + q.Vehicles
 	for seg := i - 1; seg >= 0 && rest > 0; seg-- {
 		s := &segments[seg]
+		if !nodes[i].holdsBack(segments, s) {
+			return out, rest
+		}
 		density := standingDensity(&nodes[i], segments, s)
 		length := rest
 		if q.Length == 0 {
@@ -104,6 +107,11 @@ func (q StandingQueue) parts(nodes []node, segments []segment) (out []standingPi
 		}
 	}
 	return out, rest
+}
+
+// holdsBack reports whether the node lets less pass at time 0 than segment s can carry: else no queue stands there.
+func (n *node) holdsBack(segments []segment, s *segment) bool {
+	return n.kind == SignalNode || n.heldFlow(segments) < s.diagram.capacity*(1-closeness)
 }
 
 // standingDensity is the density of a queue held by the node, on segment s (see [StandingQueue]).

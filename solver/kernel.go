@@ -138,10 +138,18 @@ func (k *kernel) check(ctx context.Context, budget Budget) error {
 	if k.interactions%contextInterval != 0 {
 		return nil
 	}
+	if err := k.withinMemory(budget); err != nil {
+		return err
+	}
+	return ctx.Err()
+}
+
+// withinMemory returns a *[LimitError] where the solution so far is larger than its budget.
+func (k *kernel) withinMemory(budget Budget) error {
 	if k.bytes() > budget.Memory {
 		return &LimitError{Limit: "bytes", Max: budget.Memory, Reached: k.now}
 	}
-	return ctx.Err()
+	return nil
 }
 
 // bytes is the size of what the solution holds.
@@ -150,7 +158,9 @@ func (k *kernel) bytes() int64 {
 		cap(k.fronts)*int(unsafe.Sizeof(front{})) + cap(k.paths)*int(unsafe.Sizeof(path{})) +
 		cap(k.steps)*int(unsafe.Sizeof(step{})) + cap(k.limits)*int(unsafe.Sizeof(bounding{})) + cap(k.agenda.regions)*4
 	for i := range k.nodes {
-		size += cap(k.nodes[i].history) * int(unsafe.Sizeof(passage{}))
+		n := &k.nodes[i]
+		size += cap(n.history)*int(unsafe.Sizeof(passage{})) + cap(n.restriction)*int(unsafe.Sizeof(SchedulePiece{})) +
+			n.capacity.bytes() + n.demand.bytes()
 	}
 	return int64(size)
 }

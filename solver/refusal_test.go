@@ -156,6 +156,24 @@ func lanesGrow(t *testing.T, initial ...solver.ProfilePiece) solver.Scenario {
 	return solver.Scenario{Segments: []solver.Segment{one, two}, Horizon: 100, Initial: solver.Initial{Profile: initial}}
 }
 
+// A standing queue ends where the road carries no more than its node passes: there is no queue of such a flow there.
+func TestStandingQueueOnARoadTooNarrowForIt(t *testing.T) {
+	narrow, wide := exactRoad(t, 1000), exactRoad(t, 1000)
+	narrow.Name, wide.Name, wide.Relation = "narrow", "wide", wide.Relation.Lanes(2)
+	s := solver.Scenario{Segments: []solver.Segment{narrow, wide}, Horizon: 60,
+		Bottlenecks: []solver.Bottleneck{{Name: "works", Place: 1500, Capacity: solver.Schedule{{Start: -1, Rate: 1.5 * narrow.Relation.Capacity()}}}}}
+	for length, fits := range map[float64]bool{500: true, 500.1: false} {
+		s.Initial.Queues = []solver.StandingQueue{{Node: "works", Length: length}}
+		err := s.Validate()
+		if fits && err != nil {
+			t.Error(err)
+		}
+		if !fits && !names(violationsOf(t, err), "Initial.Queues[0]", solver.RuleFits, "{works 0 500.1}") {
+			t.Errorf("%g m: %v", length, err)
+		}
+	}
+}
+
 // What leaves the closed family on the way is refused then and there.
 func TestWhatHasNoClosedFormIsRefusedWhenItHappens(t *testing.T) {
 	const join = "join one lane/two lanes"

@@ -46,13 +46,18 @@ func (k *kernel) compresses(u, d *region, ku, kd float64) bool {
 	return u.waveSpeed(ku) > d.waveSpeed(kd)+k.segments[u.seg].speedTolerance
 }
 
-// rise puts the one front of a rising density: a contact where one straight piece holds both states, else a
-// shock, whose path is curved where one of the sides is not uniform.
+// rise puts the one front of a rising density: a shock, whose path is curved where one of the sides is not uniform.
+// Where one straight piece holds both states it moves as the waves on that piece do and is a contact, unless the
+// lesser state is the lower corner of the piece: that one's waves are those of the piece below and run into it.
 func (k *kernel) rise(up, down int32, x, t, ku, kd float64) {
 	u, d := &k.regions[up], &k.regions[down]
 	seg := &k.segments[u.seg]
 	if piece, ok := k.commonStraight(u, d, ku, kd); ok {
-		k.addFront(front{kind: Contact, x0: x, t0: t, speed: seg.diagram.pieces[piece].cr, up: up, down: down, path: -1})
+		kind := Contact
+		if u.uniform() && seg.diagram.pieceBelow(ku-seg.densityTolerance) != piece {
+			kind = Shock
+		}
+		k.addFront(front{kind: kind, x0: x, t0: t, speed: seg.diagram.pieces[piece].cr, up: up, down: down, path: -1})
 		return
 	}
 	f := front{kind: Shock, x0: x, t0: t, up: up, down: down, path: -1}

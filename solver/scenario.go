@@ -130,7 +130,7 @@ type ProfilePiece struct {
 // StandingQueue is a queue that stands at time 0 from a node upstream. Behind a signal and behind a closed
 // bottleneck it is at jam density; behind any other node it is at the congested density whose flow is what
 // that node lets pass at time 0 (the least of its capacity and of what the roads on its two sides carry).
-// It may reach through several segments.
+// It may reach through several segments, as far as each can carry more than the node passes.
 type StandingQueue struct {
 	// Node is the name of the node that holds it.
 	Node string

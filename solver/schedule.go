@@ -180,6 +180,15 @@ func (p *Plan) validate(field string, v *violations) {
 	}
 }
 
+// switches is how often a plan with a cycle switches within the horizon; without one, its greens are all there is.
+func (p *Plan) switches(horizon float64) float64 {
+	n := float64(2 * max(1, len(p.Greens)))
+	if p.Cycle > 0 {
+		n *= horizon / p.Cycle
+	}
+	return n
+}
+
 // validateSwitches bounds the number of cycles that a plan unfolds to.
 func (p *Plan) validateSwitches(field string, horizon float64, v *violations) {
 	if p.Cycle == 0 {
@@ -188,7 +197,7 @@ func (p *Plan) validateSwitches(field string, horizon float64, v *violations) {
 	if p.Cycle > maxHorizon {
 		v.add(field+".Cycle", RuleRange, p.Cycle, fmt.Sprintf("at most %g s", float64(maxHorizon)))
 	}
-	if n := horizon / p.Cycle * float64(2*max(1, len(p.Greens))); n > maxSwitches {
+	if p.switches(horizon) > maxSwitches {
 		v.add(field+".Cycle", RuleRange, p.Cycle, fmt.Sprintf("long enough that the signal switches at most %d times within the horizon", maxSwitches))
 	}
 	if math.Abs(p.Offset) > maxHorizon || math.Abs(p.Offset) > maxSwitches*p.Cycle {

@@ -48,11 +48,14 @@ func Solve(ctx context.Context, s Scenario, b Budget) (*Solution, error) {
 	if k.refused != nil {
 		return nil, k.refused
 	}
+	if err := k.withinMemory(b); err != nil {
+		return nil, err
+	}
 	if err := k.run(ctx, b); err != nil {
 		return nil, err
 	}
-	if k.bytes() > b.Memory {
-		return nil, &LimitError{Limit: "bytes", Max: b.Memory, Reached: k.now}
+	if err := k.withinMemory(b); err != nil {
+		return nil, err
 	}
 	return newSolution(&s, l, k), nil
 }

@@ -3,6 +3,7 @@ package solver
 import (
 	"math"
 	"sort"
+	"unsafe"
 )
 
 // timetable is a schedule made ready for the event loop, which asks for it in rising order of time, and for
@@ -32,6 +33,11 @@ func newTimetable(s Schedule, before, slack float64) timetable {
 		t.totals[i] = t.totals[i-1] + t.schedule.during(i-1, t.schedule[i].Start)
 	}
 	return t
+}
+
+// bytes is the size of what it holds.
+func (t *timetable) bytes() int {
+	return cap(t.schedule)*int(unsafe.Sizeof(SchedulePiece{})) + cap(t.totals)*int(unsafe.Sizeof(float64(0)))
 }
 
 // law returns the rate from time now on. Times must not fall from call to call.

@@ -18,7 +18,7 @@ const (
 	maxJamDensity = 1e3     // [veh/m]
 	minCapacity   = 1e-6    // [veh/s]
 	maxRate       = 1e6     // any rate, of demand or capacity [veh/s]
-	maxSwitches   = 1 << 20 // of one signal within the horizon
+	maxSwitches   = 1 << 20 // of all signals together within the horizon
 	maxSegments   = 1 << 16
 )
 
@@ -145,6 +145,7 @@ func (s *Scenario) validateControls(f *findings) {
 		exit = s.exitPlace()
 	}
 	names := map[string]bool{}
+	switches := 0.0
 	for i := range s.Bottlenecks {
 		b := &s.Bottlenecks[i]
 		at := fmt.Sprintf("Bottlenecks[%d]", i)
@@ -162,9 +163,13 @@ func (s *Scenario) validateControls(f *findings) {
 		}
 		g.Plan.validate(at+".Plan", v)
 		g.Plan.validateSwitches(at+".Plan", f.horizon(s), v)
+		switches += g.Plan.switches(f.horizon(s))
 	}
 	if v.none() {
 		s.validatePlaces(v)
+	}
+	if switches > maxSwitches && v.none() {
+		v.add("Signals", RuleRange, math.Round(switches), fmt.Sprintf("signals that switch at most %d times in all within the horizon", maxSwitches))
 	}
 }
 
@@ -206,7 +211,7 @@ func (s *Scenario) validatePlaces(v *violations) {
 func (s *Scenario) validateSpacing(l layout, v *violations) {
 	for i := range l.segments {
 		g := &l.segments[i]
-		if g.end-g.start >= minLength {
+		if g.end-g.start >= minLength-samePlace {
 			continue
 		}
 		n := &l.nodes[i]
@@ -270,7 +275,7 @@ func (v *violations) steps(field string, s Schedule) {
 	for i := range s {
 		if s[i].Slope != 0 {
 			v.add(fmt.Sprintf("%s[%d].Slope", field, i), RuleClosedForm, s[i].Slope,
-				"0, that is, steps: a rate that changes linearly in time has no closed form on a curved flow-density relation")
+				"steps: a rate that changes linearly in time has no closed form on a curved flow-density relation")
 			return
 		}
 	}

@@ -51,7 +51,7 @@ func (s *Scenario) validateBackground(v *violations) {
 	flow := s.Initial.BackgroundFlow
 	for i := range s.Segments {
 		if c := s.Segments[i].Relation.Capacity(); flow > c*(1+closeness) && !math.IsInf(flow, 1) {
-			v.add("Initial.BackgroundFlow", RuleRange, flow, fmt.Sprintf("at most %g, the capacity of %s", c, s.segmentName(i)))
+			v.add("Initial.BackgroundFlow", RuleRange, flow, fmt.Sprintf("at most %g, the capacity of %q", c, s.segmentName(i)))
 			return
 		}
 	}
@@ -88,7 +88,7 @@ func validateDensities(at string, p ProfilePiece, segments []segment, v *violati
 			density float64
 		}{{".StartDensity", part.StartDensity}, {".EndDensity", part.EndDensity}} {
 			if end.density > seg.diagram.jam*(1+closeness) && !math.IsInf(end.density, 1) {
-				v.add(at+end.field, RuleRange, end.density, fmt.Sprintf("at most %g, the jam density of %s", seg.diagram.jam, seg.name))
+				v.add(at+end.field, RuleRange, end.density, fmt.Sprintf("at most %g, the jam density of %q", seg.diagram.jam, seg.name))
 				return
 			}
 		}
@@ -114,7 +114,7 @@ func (s *Scenario) validateStanding(nodes []node, segments []segment, v *violati
 		if n <= 0 {
 			continue
 		}
-		if nodes[n].kind != SignalNode && nodes[n].heldFlow(segments) >= segments[n-1].diagram.capacity*(1-closeness) {
+		if !nodes[n].holdsBack(segments, &segments[n-1]) {
 			v.add(at+".Node", RuleConflict, q.Node, "a node that holds traffic back at time 0; this one passes the capacity of the road before it")
 			continue
 		}
@@ -123,7 +123,7 @@ func (s *Scenario) validateStanding(nodes []node, segments []segment, v *violati
 			if q.Length > 0 {
 				unit = "m"
 			}
-			v.add(at, RuleFits, q, fmt.Sprintf("a queue that fits on the road behind the node; %g %s of it do not", rest, unit))
+			v.add(at, RuleFits, q, fmt.Sprintf("a queue that fits on the road behind the node, as far as that can carry more than the node passes; %g %s of it do not", rest, unit))
 		}
 	}
 	if v.none() {

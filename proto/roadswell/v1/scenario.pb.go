@@ -1043,10 +1043,11 @@ func (x *DensityPiece) GetEndDensityVehPerKm() float64 {
 	return 0
 }
 
-// StandingQueue is a queue that reaches upstream from a node at time 0. Behind a red signal and behind a closed
-// bottleneck it is at jam density; behind any other node at the congested density whose flow is what that node
-// lets pass at time 0, so that such a node must hold traffic back then. It may reach through several segments, must
-// fit into the road behind its node, and must not overlap another one.
+// StandingQueue is a queue that reaches upstream from a node at time 0. Behind a signal, red or green, and behind a
+// closed bottleneck it is at jam density; behind any other node at the congested density whose flow is what that node
+// lets pass at time 0, so that such a node must hold traffic back then. It may reach through several segments, as far
+// as each can carry more than the node passes, must fit into the road behind its node, and must not overlap another
+// one.
 type StandingQueue struct {
 	state protoimpl.MessageState `protogen:"open.v1"`
 	// Name of the node that holds it: of a bottleneck or a signal, "exit", or a join ("join A/B" between the
