@@ -44,7 +44,7 @@
 //
 // relation.go, diagram.go, region.go, front.go, riemann.go, meeting.go, crossing.go and overlooked.go with cubic.go,
 // node.go, offer.go, send.go, plan.go, agenda.go, kernel.go, merge.go; then scenario.go, schedule.go, timetable.go,
-// build.go and initial.go for what goes in, validate.go for what may; and solution.go, index.go, fronts.go, queues.go
-// (strips.go, queue_paths.go, peaks.go), trajectory.go (walk.go), polyline.go, trips.go, characteristic.go and
-// totals.go for what can be asked.
+// layout.go, build.go and initial.go for what goes in, validate.go for what may; and solution.go, index.go, fronts.go,
+// queues.go (strips.go, queue_paths.go, peaks.go), trajectory.go (walk.go), polyline.go, trips.go, characteristic.go
+// and totals.go for what can be asked.
 package solver

@@ -21,7 +21,9 @@ type Queue struct {
 	// earliest time at which it is attained [s].
 	PeakLength, PeakLengthTime float64
 	// PeakVehicles is the greatest number of vehicles in all strips, and PeakVehiclesTime the earliest time at
-	// which it is attained [s].
+	// which it is attained [s]. Both peaks are exact but for one case: where a tail lies between two profiles (which
+	// takes a curved relation), turning points are sought in sixteen parts of its life, and two within one part
+	// are passed over.
 	PeakVehicles, PeakVehiclesTime float64
 
 	sol    *Solution

@@ -1247,7 +1247,9 @@ type Queue struct {
 	StartS float64 `protobuf:"fixed64,1,opt,name=start_s,json=startS,proto3" json:"start_s,omitempty"`
 	// When it has cleared, s. Absent: it stands at the horizon still.
 	ClearedS *float64 `protobuf:"fixed64,2,opt,name=cleared_s,json=clearedS,proto3,oneof" json:"cleared_s,omitempty"`
-	// Greatest distance from the node back to the tail, m.
+	// Greatest distance from the node back to the tail, m. This and the other peak are exact but for one case: where a
+	// tail has changing densities on both of its sides (only with a curved relation), two turns within a sixteenth of
+	// the tail's life are passed over.
 	PeakLengthM float64 `protobuf:"fixed64,3,opt,name=peak_length_m,json=peakLengthM,proto3" json:"peak_length_m,omitempty"`
 	// First time at which that distance is reached, s.
 	PeakLengthTimeS float64 `protobuf:"fixed64,4,opt,name=peak_length_time_s,json=peakLengthTimeS,proto3" json:"peak_length_time_s,omitempty"`
