@@ -56,6 +56,9 @@ func solveCommand() *cobra.Command {
 		Args:    oneFile,
 		RunE: func(c *cobra.Command, args []string) error {
 			o.file = args[0]
+			if o.every == 0 && c.Flags().Changed("every") {
+				return errEvery(o.every)
+			}
 			return solve(c.Context(), o, c.InOrStdin(), c.OutOrStdout())
 		},
 	}
@@ -124,10 +127,14 @@ func solve(ctx context.Context, o solveOptions, in io.Reader, out io.Writer) err
 	return draw(o.pictures, a, response)
 }
 
+func errEvery(every time.Duration) error {
+	return fmt.Errorf("--every is %s; expected: at least 1s", every)
+}
+
 // check refuses options that cannot be used, before any work is done.
 func (o solveOptions) check() error {
 	if o.every < 0 || (o.every > 0 && o.every < time.Second) {
-		return fmt.Errorf("--every is %s; expected: at least 1s", o.every)
+		return errEvery(o.every)
 	}
 	if o.timeout <= 0 {
 		return fmt.Errorf("--timeout is %s; expected: more than 0", o.timeout)

@@ -103,6 +103,7 @@ func TestWhatCannotBeDone(t *testing.T) {
 		{"no such command", []string{"solv", good}, []string{`unknown command "solv"`, "solve"}},
 		{"departures too close for the horizon", []string{"solve", file(t, `{"scenario": {"horizon_s": 36000}}`), "--every", "1s"}, []string{"--every is 1s", "at least 4s"}},
 		{"departures too close", []string{"solve", good, "--every", "1ms"}, []string{"--every"}},
+		{"departures all at once", []string{"solve", good, "--every", "0s"}, []string{"--every is 0s", "at least 1s"}},
 		{"no time", []string{"solve", good, "--timeout", "0s"}, []string{"--timeout"}},
 		{"a server off this machine", []string{"solve", good, "--server", "192.0.2.1:7460"}, []string{"loopback"}},
 		{"nobody there", []string{"solve", good, "--server", "127.0.0.1:1", "--timeout", "3s"}, []string{"127.0.0.1:1", "no server answers", "connection refused"}},
