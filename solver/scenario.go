@@ -56,7 +56,8 @@ type Signal struct {
 
 // Plan holds the effective greens of a signal.
 type Plan struct {
-	// Cycle length [s]. 0 means that Greens are explicit times that do not repeat.
+	// Cycle length [s], long enough that all signals together switch at most 1,048,576 times within the horizon.
+	// 0 means that Greens are explicit times that do not repeat.
 	Cycle float64
 	// Offset [s] is the time at which a cycle begins (any cycle; cycles extend in both directions). 0 without Cycle.
 	Offset float64

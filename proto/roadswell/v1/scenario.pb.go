@@ -570,7 +570,8 @@ func (*Signal_Windows) isSignal_Plan() {}
 // CyclePlan repeats its greens for ever, in both directions of time.
 type CyclePlan struct {
 	state protoimpl.MessageState `protogen:"open.v1"`
-	// Cycle length, s; more than 0, and long enough that there are at most 1,048,576 switches within the horizon.
+	// Cycle length, s; more than 0, and long enough that all signals together switch at most 1,048,576 times within the
+	// horizon.
 	CycleS float64 `protobuf:"fixed64,1,opt,name=cycle_s,json=cycleS,proto3" json:"cycle_s,omitempty"`
 	// A time at which a cycle begins, s; may be negative, 0 when absent.
 	OffsetS float64 `protobuf:"fixed64,2,opt,name=offset_s,json=offsetS,proto3" json:"offset_s,omitempty"`
