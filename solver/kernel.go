@@ -3,6 +3,7 @@ package solver
 import (
 	"context"
 	"math"
+	"slices"
 	"unsafe"
 )
 
@@ -138,10 +139,34 @@ func (k *kernel) check(ctx context.Context, budget Budget) error {
 	if k.interactions%contextInterval != 0 {
 		return nil
 	}
+	k.makeRoom(budget)
 	if err := k.withinMemory(budget); err != nil {
 		return err
 	}
 	return ctx.Err()
+}
+
+// makeRoom lets lists that are nearly full grow to what they will hold at the horizon, if as much goes on
+// happening as so far and the budget allows it: growing by doubling would copy and clear twice as much.
+func (k *kernel) makeRoom(budget Budget) {
+	share := min(mostGrowth, 1.1*k.horizon/k.now, float64(budget.Memory)/float64(k.bytes()))
+	k.regions = roomFor(k.regions, share)
+	k.bounds = roomFor(k.bounds, share)
+	k.fronts = roomFor(k.fronts, share)
+	k.paths = roomFor(k.paths, share)
+	k.steps = roomFor(k.steps, share)
+	k.limits = roomFor(k.limits, share)
+}
+
+// mostGrowth bounds by how much a list grows at once on the strength of what has happened so far.
+const mostGrowth = 4
+
+// roomFor returns the list with room for share times as many elements, where it is nearly full.
+func roomFor[T any](list []T, share float64) []T {
+	if 4*len(list) < 3*cap(list) {
+		return list
+	}
+	return slices.Grow(list, max(0, int(share*float64(len(list)))-len(list)))
 }
 
 // withinMemory returns a *[LimitError] where the solution so far is larger than its budget.
