@@ -9,8 +9,8 @@ import (
 	"github.com/roadswell/roadswell/solver"
 )
 
-// transcript asks one question of every kind at many points and writes every bit of the answers down.
-func transcript(s *solved) string {
+// everyAnswer asks one question of every kind at many points and writes every bit of the answers down.
+func everyAnswer(s *solved) string {
 	out := fmt.Sprintf("%v\n", s.Stats())
 	for _, f := range s.Fronts() {
 		out += fmt.Sprintf("%d %v %v %v %v %d %v\n", f.ID, f.Kind, f.Birth, f.End, f.EndsBy, f.Into, f.Position((f.Birth.Time+f.End.Time)/2))
@@ -42,7 +42,7 @@ func TestSameInputSameOutput(t *testing.T) {
 		if err != nil {
 			t.Fatal(err)
 		}
-		if a, b := transcript(s), transcript(again); a != b {
+		if a, b := everyAnswer(s), everyAnswer(again); a != b {
 			t.Errorf("two solutions of one scenario differ:\n%s\n%s", a, b)
 		}
 	})
@@ -58,10 +58,10 @@ func TestASolutionCanBeAskedByMany(t *testing.T) {
 		answers := make([]string, 8)
 		var all sync.WaitGroup
 		for i := range answers {
-			all.Go(func() { answers[i] = transcript(s) })
+			all.Go(func() { answers[i] = everyAnswer(s) })
 		}
 		all.Wait()
-		alone := transcript(s)
+		alone := everyAnswer(s)
 		for i, a := range answers {
 			if a != alone {
 				t.Errorf("goroutine %d got:\n%s\nalone:\n%s", i, a, alone)
@@ -77,10 +77,10 @@ func TestSolvingLeavesTheScenarioAlone(t *testing.T) {
 		if a, b := describe(&s.corridor), describe(&fresh); a != b {
 			t.Errorf("the scenario was changed:\n%s\n%s", a, b)
 		}
-		before := transcript(s)
+		before := everyAnswer(s)
 		spoil(&s.scenario)
 		s.scenario.Horizon, s.scenario.Origin = fresh.scenario.Horizon, fresh.scenario.Origin
-		if after := transcript(s); before != after {
+		if after := everyAnswer(s); before != after {
 			t.Errorf("a change of the scenario after the solve changed the answers:\n%s\n%s", before, after)
 		}
 	})
