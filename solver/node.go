@@ -91,32 +91,25 @@ type rate struct {
 // puts the waves that this sends out on its two sides.
 func (k *kernel) visit(index int32) {
 	n := &k.nodes[index]
-	k.now = k.takeIn(n)
+	until := k.simultaneous()
+	k.now = k.lastArrival(n, until)
+	k.takeIn(n, until)
 	k.settle(index)
 	k.plan(index)
 }
 
-// takeIn ends the regions next to the node that are used up, and returns the time of the last of them.
-func (k *kernel) takeIn(n *node) float64 {
-	until := k.simultaneous()
-	now := k.now
-	for _, t := range [3]float64{n.due, n.capacity.next(), n.demand.next()} {
-		if t <= until {
-			now = max(now, t)
-		}
-	}
+// takeIn ends the regions next to the node that are used up by until, all at the time that is now.
+func (k *kernel) takeIn(n *node, until float64) {
 	up, down := n.up, n.down
-	for n.up >= 0 && k.bounds[n.up].due <= until && k.bounds[n.up].up >= 0 {
+	for k.gone(n.up, upSide, until) {
 		b := k.bounds[n.up]
-		now = max(now, b.due)
 		gone := n.up
 		n.up = k.fronts[b.up].up
 		k.boundDown(n.up, b.down)
 		k.bury(gone, b.up)
 	}
-	for n.down >= 0 && k.bounds[n.down].due <= until && k.bounds[n.down].down >= 0 {
+	for k.gone(n.down, downSide, until) {
 		b := k.bounds[n.down]
-		now = max(now, b.due)
 		gone := n.down
 		n.down = k.fronts[b.down].down
 		k.bounds[n.down].up = b.up
@@ -128,7 +121,34 @@ func (k *kernel) takeIn(n *node) float64 {
 	if n.down != down {
 		k.bounds[n.down].due = unscheduled
 	}
-	return now
+}
+
+// lastArrival is the time of the last of all that is due at the node by until: it all counts as happening then.
+func (k *kernel) lastArrival(n *node, until float64) float64 {
+	now := k.now
+	for _, t := range [3]float64{n.due, n.capacity.next(), n.demand.next()} {
+		if t <= until {
+			now = max(now, t)
+		}
+	}
+	for g := n.up; k.gone(g, upSide, until); g = k.fronts[k.bounds[g].up].up {
+		now = max(now, k.bounds[g].due)
+	}
+	for g := n.down; k.gone(g, downSide, until); g = k.fronts[k.bounds[g].down].down {
+		now = max(now, k.bounds[g].due)
+	}
+	return min(now, k.horizon)
+}
+
+// gone reports whether a region on that side of a node is used up by until, and there is another one behind it.
+func (k *kernel) gone(g int32, s side, until float64) bool {
+	if g < 0 || !(k.bounds[g].due <= until) {
+		return false
+	}
+	if s == upSide {
+		return k.bounds[g].up >= 0
+	}
+	return k.bounds[g].down >= 0
 }
 
 // unscheduled marks a region whose bounds have changed and whose event is not on the agenda yet.
