@@ -33,7 +33,7 @@ func FuzzSolve(f *testing.F) {
 	f.Fuzz(func(t *testing.T, message []byte) {
 		req := &pb.SolveRequest{}
 		if proto.Unmarshal(message, req) != nil {
-			t.Skip("no message of the contract")
+			return // no message of the contract
 		}
 		if len(req.GetQuestions()) == 0 && len(message) < 1<<16 {
 			askEverything(req)
