@@ -110,6 +110,10 @@ func fallingRoot(f func(float64) float64, a, b float64) float64 {
 	for i := 0; i < 200; i++ {
 		x := x1 + share*(x2-x1)
 		if x == x1 || x == x2 {
+			// A step lost in rounding says nothing about the other side of a wide bracket.
+			x = x1 + 0.5*(x2-x1)
+		}
+		if x == x1 || x == x2 {
 			break
 		}
 		fx := f(x)
@@ -122,12 +126,10 @@ func fallingRoot(f func(float64) float64, a, b float64) float64 {
 		if f1 == 0 {
 			return x1
 		}
-		width := math.Abs(x2 - x1)
-		least := 0x1p-53 * math.Abs(x1) / width
-		if least >= 0.5 {
-			break
+		share = 0.5
+		if least := 0x1p-52 * max(math.Abs(x1), math.Abs(x2)) / math.Abs(x2-x1); least < 0.5 {
+			share = max(least, min(1-least, interpolate(x1, f1, x2, f2, x3, f3)))
 		}
-		share = max(least, min(1-least, interpolate(x1, f1, x2, f2, x3, f3)))
 	}
 	if f1 <= 0 {
 		return x1
