@@ -71,14 +71,44 @@ func (c *cubic) cubicRoots(from, to float64) (roots [3]float64, n int) {
 		if a >= b || fa*fb > 0 {
 			continue
 		}
-		sign := 1.0
-		if fa < 0 {
-			sign = -1
-		}
-		roots[n] = fallingRoot(func(T float64) float64 { return sign * c.at(T) }, a, b)
+		roots[n] = c.rootBetween(a, b, fa, fb)
 		n++
 	}
 	return roots, n
+}
+
+// rootBetween returns the root between a and b, where the values are of different sign and there is no turn, to
+// the last digit: by Newton's steps, halving the bracket where one leaves it or is no shorter than half of the last.
+func (c *cubic) rootBetween(a, b, fa, fb float64) float64 {
+	switch {
+	case fa == 0:
+		return a
+	case fb == 0:
+		return b
+	}
+	x, step := a+(b-a)*(fa/(fa-fb)), b-a
+	for {
+		v := c.at(x)
+		if (v > 0) == (fa > 0) {
+			a = x
+		} else {
+			b = x
+		}
+		last := step
+		step = v / c.slope(x)
+		next := x - step
+		if math.Abs(next-x) <= 0x1p-52*math.Abs(x) {
+			return next
+		}
+		if !(next > a && next < b) || 2*math.Abs(step) > math.Abs(last) {
+			step = 0.5 * (b - a)
+			next = a + step
+			if next == a || next == b {
+				return next
+			}
+		}
+		x = next
+	}
 }
 
 // turns returns the two places where the cubic's slope is zero, in order; +Inf where there are none.

@@ -89,6 +89,15 @@ func (d *diagram) speed(k float64) float64 {
 	return max(0, d.flow(k)) / k
 }
 
+// oneCurve reports whether two pieces are parts of one parabola or line.
+func (d *diagram) oneCurve(i, j int) bool {
+	a, b := &d.pieces[min(i, j)], &d.pieces[max(i, j)]
+	if a == b {
+		return true
+	}
+	return a.d == b.d && a.hi == b.lo && math.Abs(a.waveSpeed(a.hi)-b.waveSpeed(b.lo)) <= closeness*d.freeSpeed
+}
+
 func (d *diagram) curved() bool {
 	for i := range d.pieces {
 		if d.pieces[i].d != 0 {

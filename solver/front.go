@@ -71,6 +71,9 @@ type path struct {
 	// exhausts are the times at which the profiles on the two sides are used up; NaN while nobody has asked.
 	exhausts           [2]float64
 	upPiece, downPiece int32
+	// oneCurve means that the states of both sides are on one parabola. Continued beyond what its sides hold, the
+	// shock then stays one, of the continued parabola, and its jump never vanishes.
+	oneCurve bool
 }
 
 // newPath returns the path of a shock born at time t between two regions with densities ku and kd there. A jump of
@@ -88,6 +91,7 @@ func newPath(u, d *region, ku, kd, t float64, seg *segment) path {
 	if !p.down.uniform() {
 		p.relSpeed = p.down.c - p.frame
 	}
+	p.oneCurve = seg.diagram.oneCurve(int(u.piece), int(d.piece))
 	p.jumpFlows(seg)
 	p.until = p.lastsUntil()
 	p.near = closeness * (math.Abs(seg.start) + math.Abs(seg.end))
@@ -118,7 +122,7 @@ func (p *path) jumpFlows(seg *segment) {
 // quadratic with none, once multiplied by the spreads of the two sides.
 func (p *path) lastsUntil() float64 {
 	jump := p.down.k - p.up.k
-	if jump == 0 {
+	if jump == 0 || p.oneCurve {
 		return math.Inf(1)
 	}
 	square := jump * jump // at birth

@@ -115,19 +115,38 @@ func (k *kernel) coincide(r *region, gap, closing float64) bool {
 
 // labelsMeet: both bounds of a profile are curved shocks. They only ever consume its characteristics, so the
 // span of densities between them falls to zero exactly once. When one of them has consumed all, or at the
-// profile's focus, that has happened for certain.
+// profile's focus, that has happened for certain. That time is needed only where their paths may be none of shocks
+// after it.
 func (k *kernel) labelsMeet(up, down int32, limit float64) float64 {
 	a, b := &k.fronts[up], &k.fronts[down]
 	gap := func(t float64) float64 { return k.place(b, t) - k.place(a, t) }
 	if gap(k.now) <= 0 {
 		return k.now
 	}
-	consumed := min(k.exhausts(up, downSide), k.exhausts(down, upSide))
-	limit = min(limit, min(k.exhausts(up, upSide), k.exhausts(down, downSide)))
+	limit = min(limit, min(k.endsBy(up, upSide), k.endsBy(down, downSide)))
+	consumed := math.Inf(1)
+	if !k.paths[a.path].oneCurve || !k.paths[b.path].oneCurve {
+		consumed = min(k.exhausts(up, downSide), k.exhausts(down, upSide))
+	}
 	if consumed > limit && gap(limit) > 0 {
 		return math.Inf(1)
 	}
 	return fallingRoot(gap, k.now, min(consumed, limit))
+}
+
+// endsBy is a time by which a shock has ended or is no longer what it is now, and up to which its path is one of a
+// shock: when the region on one side of it is used up, which the agenda knows unless that region is new too.
+func (k *kernel) endsBy(id int32, s side) float64 {
+	f := &k.fronts[id]
+	g := f.up
+	if s == downSide {
+		g = f.down
+	}
+	due := k.bounds[g].due
+	if math.IsNaN(due) || s == downSide && f.t0 == k.now || !k.paths[f.path].oneCurve {
+		return k.exhausts(id, s)
+	}
+	return max(k.now, due) + 2*k.slack()
 }
 
 // pathsMeet: two curved shocks with a uniform state between them, whose other sides are profiles. Each one's
