@@ -63,6 +63,8 @@ type path struct {
 	frame, relSpeed float64 // speed of the frame, and c' of the downstream side in it
 	jumpFlow        float64 // qU - qD at birth, at rest
 	frameJumpFlow   float64 // the same in the frame
+	// steadyWave is the wave speed of the side that is uniform, where there is one.
+	steadyWave float64
 	// until is the time after birth at which the formula's shock would have no jump left. One of the sides is
 	// used up before; past it the formula follows a root that is no shock.
 	until float64
@@ -85,10 +87,14 @@ func newPath(u, d *region, ku, kd, t float64, seg *segment) path {
 		p.down.k = p.up.k
 	}
 	p.frame = p.down.c
-	if !p.up.uniform() {
+	if p.up.uniform() {
+		p.steadyWave = seg.diagram.pieces[u.piece].waveSpeed(p.up.k)
+	} else {
 		p.frame = p.up.c
 	}
-	if !p.down.uniform() {
+	if p.down.uniform() {
+		p.steadyWave = seg.diagram.pieces[d.piece].waveSpeed(p.down.k)
+	} else {
 		p.relSpeed = p.down.c - p.frame
 	}
 	p.oneCurve = seg.diagram.oneCurve(int(u.piece), int(d.piece))
@@ -178,6 +184,20 @@ func (p *path) offset(T float64) float64 {
 		return p.frame*T - 2*c/(b+root)
 	}
 	return p.frame*T + (root-b)/dm
+}
+
+// onward is the offset and the speed of a shock between states of one curve, a time T after birth: on a parabola the
+// chord slope is the mean of the wave speeds at its ends.
+func (p *path) onward(T float64) (offset, speed float64) {
+	X := p.offset(T)
+	up, down := p.steadyWave, p.steadyWave
+	if !p.up.uniform() {
+		up = p.up.waveSpeed(X, T)
+	}
+	if !p.down.uniform() {
+		down = p.down.waveSpeed(X, T)
+	}
+	return X, 0.5 * (up + down)
 }
 
 // line is a straight path through (x0, t0).

@@ -115,19 +115,29 @@ func (k *kernel) coincide(r *region, gap, closing float64) bool {
 
 // labelsMeet: both bounds of a profile are curved shocks. They only ever consume its characteristics, so the
 // span of densities between them falls to zero exactly once. When one of them has consumed all, or at the
-// profile's focus, that has happened for certain. That time is needed only where their paths may be none of shocks
-// after it.
+// profile's focus, that has happened for certain.
 func (k *kernel) labelsMeet(up, down int32, limit float64) float64 {
 	a, b := &k.fronts[up], &k.fronts[down]
 	gap := func(t float64) float64 { return k.place(b, t) - k.place(a, t) }
-	if gap(k.now) <= 0 {
+	now := gap(k.now)
+	if now <= 0 {
 		return k.now
 	}
 	limit = min(limit, min(k.endsBy(up, upSide), k.endsBy(down, downSide)))
-	consumed := math.Inf(1)
-	if !k.paths[a.path].oneCurve || !k.paths[b.path].oneCurve {
-		consumed = min(k.exhausts(up, downSide), k.exhausts(down, upSide))
+	p, q := &k.paths[a.path], &k.paths[b.path]
+	if p.oneCurve && q.oneCurve {
+		last := gap(limit)
+		if last > 0 {
+			return math.Inf(1)
+		}
+		closing := func(t float64) (value, slope float64) {
+			x, v := p.onward(t - a.t0)
+			y, w := q.onward(t - b.t0)
+			return (b.x0 + y) - (a.x0 + x), w - v
+		}
+		return newtonRoot(closing, k.now, limit, now, last)
 	}
+	consumed := min(k.exhausts(up, downSide), k.exhausts(down, upSide))
 	if consumed > limit && gap(limit) > 0 {
 		return math.Inf(1)
 	}
