@@ -19,7 +19,8 @@ func newKernel(s *Scenario, l layout) *kernel {
 }
 
 // reserve makes room for what a scenario of this size usually takes, so that the lists need not be copied as
-// they grow: by measurement, some three regions and four fronts for each switch of a node.
+// they grow: by measurement, three regions and four fronts for each switch of a node, and a third less where the
+// relation is curved, as fans then take the place of contacts.
 func (k *kernel) reserve() {
 	n := 16
 	curved := false
@@ -32,15 +33,17 @@ func (k *kernel) reserve() {
 		curved = curved || k.segments[i].diagram.curved()
 	}
 	n = min(n, maxReserve)
-	k.regions = make([]region, 0, 3*n)
-	k.bounds = make([]bound, 0, 3*n)
-	k.fronts = make([]front, 0, 4*n)
-	k.limits = make([]bounding, 0, 5*n)
-	k.steps = make([]step, 0, 4*n)
-	k.agenda = newAgenda(len(k.nodes), 3*n)
+	regions, fronts := 3*n, 4*n
 	if curved {
+		regions, fronts = 2*n, 3*n
 		k.paths = make([]path, 0, 2*n)
 	}
+	k.regions = make([]region, 0, regions)
+	k.bounds = make([]bound, 0, regions)
+	k.fronts = make([]front, 0, fronts)
+	k.limits = make([]bounding, 0, regions+fronts)
+	k.steps = make([]step, 0, fronts)
+	k.agenda = newAgenda(len(k.nodes), regions)
 }
 
 // maxReserve bounds what is reserved before anything is known, to some 30 MB.

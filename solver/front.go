@@ -78,10 +78,11 @@ type path struct {
 	oneCurve bool
 }
 
-// newPath returns the path of a shock born at time t between two regions with densities ku and kd there. A jump of
+// begin makes the path that of a shock born at time t between two regions with densities ku and kd there. A jump of
 // density below the segment's tolerance is taken as none: the shock grows from nothing.
-func newPath(u, d *region, ku, kd, t float64, seg *segment) path {
-	p := path{up: u.at(ku, t), down: d.at(kd, t), upPiece: u.piece, downPiece: d.piece}
+func (p *path) begin(u, d *region, ku, kd, t float64, seg *segment) {
+	p.up, p.down = u.at(ku, t), d.at(kd, t)
+	p.upPiece, p.downPiece = u.piece, d.piece
 	p.exhausts = [2]float64{math.NaN(), math.NaN()}
 	if math.Abs(p.down.k-p.up.k) <= seg.densityTolerance {
 		p.down.k = p.up.k
@@ -101,7 +102,6 @@ func newPath(u, d *region, ku, kd, t float64, seg *segment) path {
 	p.jumpFlows(seg)
 	p.until = p.lastsUntil()
 	p.near = closeness * (math.Abs(seg.start) + math.Abs(seg.end))
-	return p
 }
 
 // jumpFlows sets the jumps of flow. In the frame, which is the wave speed of one side, the jump is how far the

@@ -20,9 +20,12 @@ const minSpan = 8
 func newIndex(p *plane) []segmentIndex {
 	index := make([]segmentIndex, len(p.segments))
 	open := make([]openSpan, len(p.segments))
+	spans := 1 + len(p.fronts)/(minSpan*len(open)) // of a segment, about
 	for i := range open {
-		index[i].starts = []float64{0}
-		index[i].first = []int32{0}
+		index[i].starts = append(make([]float64, 0, spans), 0)
+		index[i].first = append(make([]int32, 0, spans+1), 0)
+		index[i].fronts = make([]int32, 0, 2*minSpan*spans)
+		open[i].members = make([]int32, 0, 2*minSpan)
 	}
 	for id := range p.fronts {
 		f := &p.fronts[id]

@@ -65,7 +65,8 @@ func (k *kernel) rise(up, down int32, x, t, ku, kd float64) {
 		f.speed = seg.diagram.secant(int(u.piece), ku, int(d.piece), kd)
 	} else {
 		f.path = int32(len(k.paths))
-		k.paths = append(k.paths, newPath(u, d, ku, kd, t, seg))
+		k.paths = append(k.paths, path{})
+		k.paths[f.path].begin(u, d, ku, kd, t, seg)
 	}
 	k.addFront(f)
 }
