@@ -68,21 +68,28 @@ func square(x float64) float64 { return x * x }
 
 // differenceAlong is the difference of the counts of the two sides along a line, times its denominators.
 func (p *path) differenceAlong(e, v float64, along side) cubic {
-	var c cubic
-	c[0] = (p.down.k - p.up.k) * e
-	c[1] = p.jumpFlow - v*(p.up.k-p.down.k)
-	var up, down rational
-	if along == upSide {
+	c := cubic{(p.down.k - p.up.k) * e, p.jumpFlow - v*(p.up.k-p.down.k)}
+	up, down := !p.up.uniform(), !p.down.uniform()
+	if up && along == upSide {
 		p.up.ride(e, &c, 1)
-	} else {
-		up = p.up.bulge(e, v)
+		up = false
 	}
-	if along == downSide {
+	if down && along == downSide {
 		p.down.ride(e, &c, -1)
-	} else {
-		down = p.down.bulge(e, v)
+		down = false
 	}
-	return combine(c, up, down)
+	switch {
+	case up && down:
+		u, d := p.up.bulge(e, v), p.down.bulge(e, v)
+		return combineBoth(&c, &u, &d)
+	case up:
+		r := p.up.bulge(e, v)
+		return combineOne(&c, &r, -1)
+	case down:
+		r := p.down.bulge(e, v)
+		return combineOne(&c, &r, 1)
+	}
+	return c
 }
 
 // side names one side of a front or node.
@@ -95,59 +102,49 @@ const (
 )
 
 // rational is the term (u0 + u1 T)²/(2 (s0 + s1 T)) by which the count of a linear profile along a line falls
-// short of a linear function; flat where there is none.
+// short of a linear function.
 type rational struct {
 	u0, u1, s0, s1 float64
-	present        bool
 }
 
-// bulge is that term of a side along the line at distance e at birth with speed v.
+// bulge is that term of a profile along the line at distance e at birth with speed v.
 func (l *local) bulge(e, v float64) rational {
-	if l.uniform() {
-		return rational{}
-	}
-	return rational{u0: e, u1: v - l.c, s0: l.s, s1: l.d, present: true}
+	return rational{u0: e, u1: v - l.c, s0: l.s, s1: l.d}
 }
 
-// ride adds to c the count of a side along one of its own characteristics, beyond the linear part that all
+// ride adds to c the count of a profile along one of its own characteristics, beyond the linear part that all
 // lines have: (k'-k)²/2 (s + d T), where k' is the characteristic's density.
 func (l *local) ride(e float64, c *cubic, sign float64) {
-	if l.uniform() {
-		return
-	}
 	dk := e / l.s
 	c[0] -= sign * 0.5 * dk * dk * l.s
 	c[1] -= sign * 0.5 * dk * dk * l.d
 }
 
-// combine returns (linear - up + down) times the denominators that it has, each with its sign taken so that
-// the sign of the result is that of the sum. The linear part is in c[0], c[1].
-func combine(c cubic, up, down rational) cubic {
-	switch {
-	case up.present && down.present:
-		return combineBoth(c, up, down)
-	case up.present:
-		return combineOne(c, up, -1)
-	case down.present:
-		return combineOne(c, down, 1)
+// sign of the denominator soon after the birth.
+func (r *rational) sign() float64 {
+	if r.s0 == 0 {
+		return math.Copysign(1, r.s1)
 	}
-	return c
+	return math.Copysign(1, r.s0)
 }
 
-func combineOne(c cubic, r rational, sign float64) cubic {
-	w := math.Copysign(1, r.s0)
-	if r.s0 == 0 {
-		w = math.Copysign(1, r.s1)
-	}
+// combineOne returns the linear function in c[0], c[1] plus sign times r, times the denominator of r, so that the
+// sign of the result is that of the sum.
+func combineOne(c *cubic, r *rational, sign float64) cubic {
+	w := r.sign()
+	sign *= w
+	w *= 2
 	return cubic{
-		w * (2*c[0]*r.s0 + sign*r.u0*r.u0),
-		w * (2*(c[0]*r.s1+c[1]*r.s0) + 2*sign*r.u0*r.u1),
-		w * (2*c[1]*r.s1 + sign*r.u1*r.u1),
+		w*c[0]*r.s0 + sign*r.u0*r.u0,
+		w*(c[0]*r.s1+c[1]*r.s0) + 2*sign*r.u0*r.u1,
+		w*c[1]*r.s1 + sign*r.u1*r.u1,
 		0,
 	}
 }
 
-func combineBoth(c cubic, up, down rational) cubic {
+// combineBoth returns the linear function in c[0], c[1] less up plus down, times the denominators of both, so that
+// the sign of the result is that of the sum.
+func combineBoth(c *cubic, up, down *rational) cubic {
 	w := math.Copysign(1, up.s0) * math.Copysign(1, down.s0)
 	// s = sU sD, and each bulge times the other's spread.
 	s0, s1, s2 := up.s0*down.s0, up.s0*down.s1+up.s1*down.s0, up.s1*down.s1

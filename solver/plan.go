@@ -102,7 +102,7 @@ func (k *kernel) queueGone(n *node) float64 {
 		if r.d == 0 {
 			c[2] += 0.5 * speed * speed / s
 		} else {
-			c = combineOne(c, rational{u1: speed, s0: s, s1: r.d}, 1)
+			c = combineOne(&c, &rational{u1: speed, s0: s, s1: r.d}, 1)
 		}
 	}
 	return later(k.now, k.now+c.descent(0, k.horizon-k.now))

@@ -112,6 +112,7 @@ func (s *Solution) countReached(g int32, x, count, from, until float64) float64 
 		return min(until, from+missing/r.flow(label))
 	}
 	form := r.from(x, from)
-	T := combine(cubic{missing, -form.flow()}, rational{}, form.bulge(0, 0)).descent(0, until-from)
+	bulge := form.bulge(0, 0)
+	T := combineOne(&cubic{missing, -form.flow()}, &bulge, 1).descent(0, until-from)
 	return min(until, from+T)
 }

@@ -155,7 +155,8 @@ func (l *leg) meets(o line, from, until, slack float64) float64 {
 	} else {
 		c[0] = l.form.k * e
 		c[1] = o.speed*l.form.k - l.form.flow()
-		c = combine(c, rational{}, l.form.bulge(e, o.speed))
+		bulge := l.form.bulge(e, o.speed)
+		c = combineOne(&c, &bulge, 1)
 	}
 	begin := from - l.t
 	if begin > 0 {
