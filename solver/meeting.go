@@ -19,6 +19,8 @@ func (k *kernel) boundsMeet(g int32, b bound) float64 {
 	switch {
 	case upPath == nil && downPath == nil:
 		return k.linesMeet(r, b, upLine, downLine)
+	case downPath == nil && k.fallsBehind(b.up, downLine.speed), upPath == nil && k.runsAhead(b.down, upLine.speed):
+		return math.Inf(1)
 	case downPath == nil:
 		return upPath.crossing(upLine.x0, upLine.t0, downLine, alongIf(r, b.down, downSide), 1, k.now, k.limit(b, r), k.slack())
 	case upPath == nil:
@@ -61,6 +63,37 @@ func (k *kernel) limit(b bound, r *region) float64 {
 		t = min(t, k.regions[k.fronts[b.down].down].focus())
 	}
 	return t
+}
+
+// fallsBehind reports whether a curved shock never gets any closer to a line of that speed ahead of it. The chord slope
+// on a parabola is the mean of the wave speeds of both sides, and these lie between those of the sides' labels.
+func (k *kernel) fallsBehind(id int32, speed float64) bool {
+	f := &k.fronts[id]
+	p := &k.paths[f.path]
+	return p.oneCurve && 0.5*(p.fastest(&k.regions[f.up])+p.fastest(&k.regions[f.down])) <= speed
+}
+
+// runsAhead reports the same for a line of that speed behind it.
+func (k *kernel) runsAhead(id int32, speed float64) bool {
+	f := &k.fronts[id]
+	p := &k.paths[f.path]
+	return p.oneCurve && 0.5*(p.slowest(&k.regions[f.up])+p.slowest(&k.regions[f.down])) >= speed
+}
+
+// fastest wave of all that a side of the shock holds.
+func (p *path) fastest(r *region) float64 {
+	if r.uniform() {
+		return p.steadyWave
+	}
+	return max(r.waveSpeed(r.upLabel), r.waveSpeed(r.downLabel))
+}
+
+// slowest wave of all that a side of the shock holds.
+func (p *path) slowest(r *region) float64 {
+	if r.uniform() {
+		return p.steadyWave
+	}
+	return min(r.waveSpeed(r.upLabel), r.waveSpeed(r.downLabel))
 }
 
 // exhausts is when a shock has consumed the last density of the profile on one side of it, +Inf where it never
