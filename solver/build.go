@@ -58,7 +58,7 @@ func (k *kernel) start(seg int32, pieces []ProfilePiece, count float64) float64 
 	for _, p := range pieces {
 		for _, g := range s.initialRegions(p, seg) {
 			g.region.n = count
-			id := k.addRegion(g.region)
+			id := k.addRegion(&g.region)
 			if last < 0 {
 				first = id
 				k.bounds[id].up = ^seg

@@ -3,6 +3,7 @@ package solver
 import (
 	"fmt"
 	"math"
+	"strconv"
 	"strings"
 )
 
@@ -104,6 +105,9 @@ func (e *ClosedFormError) Error() string {
 	return fmt.Sprintf("no closed form at node %q from %g s on: %s", e.Node, e.Time, e.What)
 }
 
+// item is the field path of an entry of a list.
+func item(list string, i int) string { return list + "[" + strconv.Itoa(i) + "]" }
+
 // violations collects broken requirements under a field path.
 type violations struct {
 	list []Violation
@@ -114,7 +118,8 @@ func (v *violations) add(field string, rule Rule, value any, allowed string) {
 	if value != nil {
 		text = fmt.Sprint(value)
 	}
-	v.list = append(v.list, Violation{Field: field, Rule: rule, Value: text, Allowed: allowed})
+	// A copy of its own, so that the fields of all that is in order need not be kept.
+	v.list = append(v.list, Violation{Field: strings.Clone(field), Rule: rule, Value: text, Allowed: allowed})
 }
 
 // err returns the collected violations as an error, or nil where there are none.

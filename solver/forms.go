@@ -213,7 +213,7 @@ func checkCorners(corners []FlowPoint, v *violations) {
 		return
 	}
 	for i, c := range corners {
-		at := fmt.Sprintf("[%d]", i)
+		at := item("", i)
 		v.notNegative(at+".Density", c.Density)
 		v.notNegative(at+".Flow", c.Flow)
 		if i > 0 && !(c.Density > corners[i-1].Density) {
@@ -234,7 +234,7 @@ func checkCorners(corners []FlowPoint, v *violations) {
 	for i := 1; i <= last; i++ {
 		next := (corners[i].Flow - corners[i-1].Flow) / (corners[i].Density - corners[i-1].Density)
 		if next > slope+closeness*math.Abs(slope) {
-			v.add(fmt.Sprintf("[%d]", i-1), RuleConcave, corners[i-1], fmt.Sprintf("the slope must not rise with density; it rises here from %g to %g m/s", slope, next))
+			v.add(item("", i-1), RuleConcave, corners[i-1], fmt.Sprintf("the slope must not rise with density; it rises here from %g to %g m/s", slope, next))
 		}
 		slope = next
 	}

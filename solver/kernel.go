@@ -77,9 +77,9 @@ type step struct {
 	firstFront, lastFront int32
 }
 
-func (k *kernel) addRegion(g region) int32 {
+func (k *kernel) addRegion(g *region) int32 {
 	id := int32(len(k.regions))
-	k.regions = append(k.regions, g)
+	k.regions = append(k.regions, *g)
 	k.bounds = append(k.bounds, bound{died: math.Inf(1), due: math.Inf(1), limits: -1})
 	k.agenda.regions = append(k.agenda.regions, -1)
 	return id

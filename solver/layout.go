@@ -1,9 +1,9 @@
 package solver
 
 import (
-	"fmt"
 	"math"
 	"sort"
+	"strconv"
 )
 
 // samePlace [m]: places closer than this are one place. Callers add up lengths and convert units, so two
@@ -46,7 +46,7 @@ func (s *Scenario) segmentName(i int) string {
 	if s.Segments[i].Name != "" {
 		return s.Segments[i].Name
 	}
-	return fmt.Sprintf("segment %d", i+1)
+	return "segment " + strconv.Itoa(i+1)
 }
 
 // layout is the corridor as nodes and the segments between them, upstream first.
@@ -67,7 +67,7 @@ func (s *Scenario) layout() layout {
 	x := s.Origin
 	for i := range s.Segments {
 		end := x + s.Segments[i].Length
-		from := x
+		from, name, diagram := x, s.segmentName(i), s.Segments[i].Relation.diagram
 		for len(list) > 0 && list[0].place < end-samePlace {
 			c := list[0]
 			list = list[1:]
@@ -75,13 +75,13 @@ func (s *Scenario) layout() layout {
 				nodes[len(nodes)-1].take(&c, s.Horizon)
 				continue
 			}
-			segments = append(segments, newSegment(s.segmentName(i), from, c.place, s.Segments[i].Relation.diagram))
+			segments = append(segments, newSegment(name, from, c.place, diagram))
 			roads = append(roads, i)
 			nodes = append(nodes, node{x: c.place})
 			nodes[len(nodes)-1].take(&c, s.Horizon)
 			from = c.place
 		}
-		segments = append(segments, newSegment(s.segmentName(i), from, end, s.Segments[i].Relation.diagram))
+		segments = append(segments, newSegment(name, from, end, diagram))
 		roads = append(roads, i)
 		nodes = append(nodes, node{name: s.joinName(i), kind: JoinNode, x: end})
 		x = end

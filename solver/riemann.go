@@ -108,7 +108,8 @@ func (k *kernel) fall(up, down int32, x, t, n, ku, kd float64) {
 			p = pending{true, Contact, head}
 			continue
 		}
-		fan := k.addRegion(fanRegion(piece, int32(w.piece), w, x, t, n, k.regions[up].seg))
+		r := fanRegion(piece, int32(w.piece), w, x, t, n, k.regions[up].seg)
+		fan := k.addRegion(&r)
 		if !p.set {
 			p = pending{true, Edge, head}
 		}
@@ -132,7 +133,8 @@ func (k *kernel) wedge(left int32, p pending, head, label, x, t, n float64) (int
 	if !p.set || head-p.speed <= seg.speedTolerance {
 		return left, p
 	}
-	mid := k.addRegion(uniformRegion(seg.diagram, label, x, t, n, k.regions[left].seg))
+	r := uniformRegion(seg.diagram, label, x, t, n, k.regions[left].seg)
+	mid := k.addRegion(&r)
 	k.addFront(front{kind: p.kind, x0: x, t0: t, speed: p.speed, up: left, down: mid, path: -1})
 	return mid, pending{}
 }

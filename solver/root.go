@@ -59,7 +59,7 @@ func interpolate(x1, f1, x2, f2, x3, f3 float64) float64 {
 
 // newtonRoot returns the root of a function without a turn between a and b, where its values fa and fb are of
 // different sign, to the last digit: by Newton's steps, or halving the bracket where one leaves it or is no shorter than
-// half of the last. f returns the value and the slope; at b it may have no value (NaN).
+// half of the one before. f returns the value and the slope; at b it may have no value (NaN).
 func newtonRoot(f func(float64) (value, slope float64), a, b, fa, fb float64) float64 {
 	switch {
 	case fa == 0:
@@ -67,29 +67,32 @@ func newtonRoot(f func(float64) (value, slope float64), a, b, fa, fb float64) fl
 	case fb == 0:
 		return b
 	}
-	x, step := a+(b-a)*(fa/(fa-fb)), b-a
+	x := a + (b-a)*(fa/(fa-fb))
 	if !(x > a && x < b) {
 		x = 0.5 * (a + b) // also where one end has no value
 	}
-	for {
+	for last := math.NaN(); ; {
 		value, slope := f(x)
 		if (value > 0) == (fa > 0) {
 			a = x
 		} else {
 			b = x
 		}
-		last := step
-		step = value / slope
+		step := value / slope
 		next := x - step
-		if math.Abs(next-x) <= 0x1p-52*math.Abs(x) {
+		switch share := step / last; {
+		case math.Abs(next-x) <= 0x1p-52*math.Abs(x):
 			return next
-		}
-		if !(next > a && next < b) || 2*math.Abs(step) > math.Abs(last) {
-			step = 0.5 * (b - a)
-			next = a + step
+		case math.Abs(step)*share*share <= 0x1p-54*math.Abs(x) && next > a && next < b:
+			return next // steps shrink by squares: the one after would be lost in rounding
+		case !(next > a && next < b) || math.Abs(share) > 0.5:
+			next = a + 0.5*(b-a)
 			if next == a || next == b {
 				return next
 			}
+			last = math.NaN()
+		default:
+			last = step
 		}
 		x = next
 	}

@@ -91,7 +91,7 @@ func (s Schedule) validate(field string, horizon float64, unlimited bool, v *vio
 		v.add(field, RuleRange, len(s), fmt.Sprintf("at most %d pieces", maxPieces))
 	}
 	for i := range s {
-		at := fmt.Sprintf("%s[%d]", field, i)
+		at := item(field, i)
 		p := &s[i]
 		v.within(at+".Start", p.Start, -maxHorizon, maxHorizon)
 		if i > 0 && p.Start <= s[i-1].Start {
@@ -165,7 +165,7 @@ func (p *Plan) validate(field string, v *violations) {
 		v.add(field+".Offset", RuleConflict, p.Offset, "0 where there is no cycle")
 	}
 	for i, w := range p.Greens {
-		at := fmt.Sprintf("%s.Greens[%d]", field, i)
+		at := item(field+".Greens", i)
 		v.finite(at+".Start", w.Start)
 		v.finite(at+".End", w.End)
 		if !(w.End > w.Start) {

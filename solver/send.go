@@ -20,11 +20,11 @@ func (k *kernel) send(index int32, s side, flow rate, count float64) {
 	if !ok {
 		return
 	}
-	k.put(index, s, fresh, old, count)
+	k.put(index, s, &fresh, old, count)
 }
 
 // put places a fresh region between the node and the region old that was next to it.
-func (k *kernel) put(index int32, s side, fresh region, old int32, count float64) {
+func (k *kernel) put(index int32, s side, fresh *region, old int32, count float64) {
 	n := &k.nodes[index]
 	born := int32(len(k.fronts))
 	g := k.addRegion(fresh)

@@ -16,14 +16,14 @@ func (s *Scenario) validateControls(f *findings) {
 	switches := 0.0
 	for i := range s.Bottlenecks {
 		b := &s.Bottlenecks[i]
-		at := fmt.Sprintf("Bottlenecks[%d]", i)
+		at := item("Bottlenecks", i)
 		v.named(at+".Name", b.Name, names)
 		v.onRoad(at+".Place", b.Place, s.Origin, exit)
 		b.Capacity.validate(at+".Capacity", f.horizon(s), true, v)
 	}
 	for i := range s.Signals {
 		g := &s.Signals[i]
-		at := fmt.Sprintf("Signals[%d]", i)
+		at := item("Signals", i)
 		v.named(at+".Name", g.Name, names)
 		v.onRoad(at+".Place", g.Place, s.Origin, exit)
 		if !(g.SaturationFlow > 0) {
@@ -86,12 +86,12 @@ func (s *Scenario) validateSpacing(l layout, v *violations) {
 func (s *Scenario) controlField(name string) string {
 	for i := range s.Bottlenecks {
 		if s.Bottlenecks[i].Name == name {
-			return fmt.Sprintf("Bottlenecks[%d]", i)
+			return item("Bottlenecks", i)
 		}
 	}
 	for i := range s.Signals {
 		if s.Signals[i].Name == name {
-			return fmt.Sprintf("Signals[%d]", i)
+			return item("Signals", i)
 		}
 	}
 	return ""

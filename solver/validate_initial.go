@@ -11,7 +11,7 @@ func (s *Scenario) validateInitialNumbers(v *violations) {
 		v.add("Initial.Profile", RuleRange, n, fmt.Sprintf("at most %d pieces", maxPieces))
 	}
 	for i, p := range s.Initial.Profile {
-		at := fmt.Sprintf("Initial.Profile[%d]", i)
+		at := item("Initial.Profile", i)
 		v.finite(at+".Start", p.Start)
 		if v.finite(at+".End", p.End) && !(p.End > p.Start) {
 			v.add(at+".End", RuleOrder, p.End, fmt.Sprintf("beyond its start, %g", p.Start))
@@ -24,7 +24,7 @@ func (s *Scenario) validateInitialNumbers(v *violations) {
 		v.add("Initial.BackgroundFlow", RuleConflict, s.Initial.BackgroundFlow, "0 where a profile is given")
 	}
 	for i, q := range s.Initial.Queues {
-		at := fmt.Sprintf("Initial.Queues[%d]", i)
+		at := item("Initial.Queues", i)
 		v.notNegative(at+".Vehicles", q.Vehicles)
 		v.notNegative(at+".Length", q.Length)
 		if (q.Vehicles > 0) == (q.Length > 0) {
@@ -61,7 +61,7 @@ func (s *Scenario) validateProfile(segments []segment, v *violations) {
 	profile := s.Initial.Profile
 	start, end := segments[0].start, segments[len(segments)-1].end
 	for i, p := range profile {
-		at := fmt.Sprintf("Initial.Profile[%d]", i)
+		at := item("Initial.Profile", i)
 		if gap := math.Abs(p.Start - start); gap > samePlace && !math.IsInf(gap, 1) {
 			v.add(at+".Start", RuleCover, p.Start, fmt.Sprintf("%g, where the piece before it (or the corridor's entry) leaves off", start))
 		}
@@ -109,7 +109,7 @@ func (s *Scenario) validateStandingNames(nodes []node, v *violations) {
 
 func (s *Scenario) validateStanding(nodes []node, segments []segment, v *violations) {
 	for i, q := range s.Initial.Queues {
-		at := fmt.Sprintf("Initial.Queues[%d]", i)
+		at := item("Initial.Queues", i)
 		n := nodeNamed(nodes, q.Node)
 		if n <= 0 {
 			continue
@@ -138,7 +138,7 @@ func (s *Scenario) validateOverlap(nodes []node, segments []segment, v *violatio
 		for _, p := range parts {
 			for _, o := range seen {
 				if p.segment == o.segment && p.piece.Start < o.piece.End-samePlace && o.piece.Start < p.piece.End-samePlace {
-					v.add(fmt.Sprintf("Initial.Queues[%d]", i), RuleConflict, q, "queues that do not overlap")
+					v.add(item("Initial.Queues", i), RuleConflict, q, "queues that do not overlap")
 					return
 				}
 			}

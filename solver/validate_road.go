@@ -16,7 +16,7 @@ func (s *Scenario) validateRoad(v *violations) {
 	names := map[string]bool{}
 	total := 0.0
 	for i := range s.Segments {
-		at := fmt.Sprintf("Segments[%d]", i)
+		at := item("Segments", i)
 		g := &s.Segments[i]
 		v.within(at+".Length", g.Length, minLength, maxPlace)
 		total += g.Length
