@@ -47,7 +47,7 @@ func (k *kernel) reserve() {
 }
 
 // maxReserve bounds what is reserved before anything is known, to some 30 MB.
-const maxReserve = 1 << 15
+const maxReserve = 1 << 10
 
 // start puts the initial regions of a segment, upstream first, and the waves between them. It returns the
 // count at the segment's end: counts fall downstream by the vehicles in between.

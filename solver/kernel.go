@@ -149,24 +149,30 @@ func (k *kernel) check(ctx context.Context, budget Budget) error {
 // makeRoom lets lists that are nearly full grow to what they will hold at the horizon, if as much goes on
 // happening as so far and the budget allows it: growing by doubling would copy and clear twice as much.
 func (k *kernel) makeRoom(budget Budget) {
-	share := min(mostGrowth, 1.1*k.horizon/k.now, float64(budget.Memory)/float64(k.bytes()))
-	k.regions = roomFor(k.regions, share)
-	k.bounds = roomFor(k.bounds, share)
-	k.fronts = roomFor(k.fronts, share)
-	k.paths = roomFor(k.paths, share)
-	k.steps = roomFor(k.steps, share)
-	k.limits = roomFor(k.limits, share)
+	r := room{share: k.horizon / k.now, most: min(mostGrowth, float64(budget.Memory)/float64(k.bytes()))}
+	k.regions = roomFor(k.regions, r)
+	k.bounds = roomFor(k.bounds, r)
+	k.fronts = roomFor(k.fronts, r)
+	k.paths = roomFor(k.paths, r)
+	k.steps = roomFor(k.steps, r)
+	k.limits = roomFor(k.limits, r)
 }
 
 // mostGrowth bounds by how much a list grows at once on the strength of what has happened so far.
-const mostGrowth = 4
+const mostGrowth = 16
 
-// roomFor returns the list with room for share times as many elements, where it is nearly full.
-func roomFor[T any](list []T, share float64) []T {
-	if 4*len(list) < 3*cap(list) {
+// room says by how many times a list will have grown at the horizon, and by how many it may at once.
+type room struct {
+	share, most float64
+}
+
+// roomFor returns the list with room for what it will hold and a tenth more, where it is nearly full and will not do.
+func roomFor[T any](list []T, r room) []T {
+	if 8*len(list) < 7*cap(list) || r.share*float64(len(list)) <= float64(cap(list)) {
 		return list
 	}
-	return slices.Grow(list, max(0, int(share*float64(len(list)))-len(list)))
+	grown := min(1.1*r.share, r.most) * float64(len(list))
+	return slices.Grow(list, max(0, int(grown)-len(list)))
 }
 
 // withinMemory returns a *[LimitError] where the solution so far is larger than its budget.
