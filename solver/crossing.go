@@ -41,7 +41,7 @@ func (p *path) crossing(x0, t0 float64, l line, along side, direction, now, limi
 // has hidden that they meet right here.
 func (p *path) passed(e, speed, direction float64) bool {
 	jump := p.up.k - p.down.k
-	return e*direction < 0 && jump != 0 && (speed-p.jumpFlow/jump)*direction < 0
+	return e*direction < 0 && jump != 0 && (speed-p.jumpFlow()/jump)*direction < 0
 }
 
 // setsOut reports whether the shock, born on a line, goes to that side of it on which it may not be: by its speed,
@@ -56,7 +56,7 @@ func (p *path) setsOut(speed, direction float64) bool {
 	if jump <= closeness*(p.down.k+p.up.k) {
 		return false
 	}
-	v := -p.jumpFlow / jump
+	v := -p.jumpFlow() / jump
 	if d := v - speed; math.Abs(d) > closeness*(math.Abs(p.up.c)+math.Abs(p.down.c)+math.Abs(v)) {
 		return d*direction > 0
 	}
@@ -68,7 +68,7 @@ func square(x float64) float64 { return x * x }
 
 // differenceAlong is the difference of the counts of the two sides along a line, times its denominators.
 func (p *path) differenceAlong(e, v float64, along side) cubic {
-	c := cubic{(p.down.k - p.up.k) * e, p.jumpFlow - v*(p.up.k-p.down.k)}
+	c := cubic{(p.down.k - p.up.k) * e, p.jumpFlow() - v*(p.up.k-p.down.k)}
 	up, down := !p.up.uniform(), !p.down.uniform()
 	if up && along == upSide {
 		p.up.ride(e, &c, 1)

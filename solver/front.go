@@ -61,17 +61,14 @@ type front struct {
 type path struct {
 	up, down        local
 	frame, relSpeed float64 // speed of the frame, and c' of the downstream side in it
-	jumpFlow        float64 // qU - qD at birth, at rest
-	frameJumpFlow   float64 // the same in the frame
+	frameJumpFlow   float64 // qU - qD at birth, in the frame
 	// steadyWave is the wave speed of the side that is uniform, where there is one.
 	steadyWave float64
 	// until is the time after birth at which the formula's shock would have no jump left. One of the sides is
 	// used up before; past it the formula follows a root that is no shock.
 	until float64
 	// near [m] is within which the shock is taken to have met a line where it vanishes.
-	near float64
-	// exhausts are the times at which the profiles on the two sides are used up; NaN while nobody has asked.
-	exhausts           [2]float64
+	near               float64
 	upPiece, downPiece int32
 	// oneCurve means that the states of both sides are on one parabola. Continued beyond what its sides hold, the
 	// shock then stays one, of the continued parabola, and its jump never vanishes.
@@ -83,7 +80,6 @@ type path struct {
 func (p *path) begin(u, d *region, ku, kd, t float64, seg *segment) {
 	p.up, p.down = u.at(ku, t), d.at(kd, t)
 	p.upPiece, p.downPiece = u.piece, d.piece
-	p.exhausts = [2]float64{math.NaN(), math.NaN()}
 	if math.Abs(p.down.k-p.up.k) <= seg.densityTolerance {
 		p.down.k = p.up.k
 	}
@@ -99,16 +95,16 @@ func (p *path) begin(u, d *region, ku, kd, t float64, seg *segment) {
 		p.relSpeed = p.down.c - p.frame
 	}
 	p.oneCurve = seg.diagram.oneCurve(int(u.piece), int(d.piece))
-	p.jumpFlows(seg)
+	p.setJumpFlow(seg)
 	p.until = p.lastsUntil()
 	p.near = closeness * (math.Abs(seg.start) + math.Abs(seg.end))
 }
 
-// jumpFlows sets the jumps of flow. In the frame, which is the wave speed of one side, the jump is how far the
+// setJumpFlow sets the jump of flow. In the frame, which is the wave speed of one side, the jump is how far the
 // other side lies below that one's tangent: a sum of terms of one sign, right to the last digit also where the
 // densities nearly agree. A jump of flow at rest below the segment's tolerance is taken as none where the waves of
 // both sides come to a shock at rest.
-func (p *path) jumpFlows(seg *segment) {
+func (p *path) setJumpFlow(seg *segment) {
 	d := seg.diagram
 	u, w := int(p.upPiece), int(p.downPiece)
 	if p.up.uniform() {
@@ -116,13 +112,14 @@ func (p *path) jumpFlows(seg *segment) {
 	} else {
 		p.frameJumpFlow = d.tangentGap(u, p.up.k, w, p.down.k)
 	}
-	p.jumpFlow = p.frameJumpFlow + p.frame*(p.up.k-p.down.k)
 	rests := d.pieces[u].waveSpeed(p.up.k) >= -seg.speedTolerance && d.pieces[w].waveSpeed(p.down.k) <= seg.speedTolerance
-	if rests && math.Abs(p.jumpFlow) <= seg.flowTolerance {
-		p.jumpFlow = 0
+	if rests && math.Abs(p.jumpFlow()) <= seg.flowTolerance {
 		p.frameJumpFlow = -p.frame * (p.up.k - p.down.k)
 	}
 }
+
+// jumpFlow is the jump qU - qD of flow at birth, at rest.
+func (p *path) jumpFlow() float64 { return p.frameJumpFlow + p.frame*(p.up.k-p.down.k) }
 
 // lastsUntil is the first zero of the square of the jump, which is linear in time with one uniform side and
 // quadratic with none, once multiplied by the spreads of the two sides.

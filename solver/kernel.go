@@ -149,30 +149,38 @@ func (k *kernel) check(ctx context.Context, budget Budget) error {
 // makeRoom lets lists that are nearly full grow to what they will hold at the horizon, if as much goes on
 // happening as so far and the budget allows it: growing by doubling would copy and clear twice as much.
 func (k *kernel) makeRoom(budget Budget) {
-	r := room{share: k.horizon / k.now, most: min(mostGrowth, float64(budget.Memory)/float64(k.bytes()))}
-	k.regions = roomFor(k.regions, r)
-	k.bounds = roomFor(k.bounds, r)
-	k.fronts = roomFor(k.fronts, r)
-	k.paths = roomFor(k.paths, r)
-	k.steps = roomFor(k.steps, r)
-	k.limits = roomFor(k.limits, r)
+	r := room{share: k.horizon / k.now, left: budget.Memory - k.bytes()}
+	k.regions = roomFor(k.regions, &r)
+	k.bounds = roomFor(k.bounds, &r)
+	k.fronts = roomFor(k.fronts, &r)
+	k.paths = roomFor(k.paths, &r)
+	k.steps = roomFor(k.steps, &r)
+	k.limits = roomFor(k.limits, &r)
+}
+
+// room says by how many times lists will have grown at the horizon, and how many bytes they may still take.
+type room struct {
+	share float64
+	left  int64
 }
 
 // mostGrowth bounds by how much a list grows at once on the strength of what has happened so far.
 const mostGrowth = 16
 
-// room says by how many times a list will have grown at the horizon, and by how many it may at once.
-type room struct {
-	share, most float64
-}
-
 // roomFor returns the list with room for what it will hold and a tenth more, where it is nearly full and will not do.
-func roomFor[T any](list []T, r room) []T {
-	if 8*len(list) < 7*cap(list) || r.share*float64(len(list)) <= float64(cap(list)) {
+func roomFor[T any](list []T, r *room) []T {
+	held := float64(len(list))
+	if 8*len(list) < 7*cap(list) || r.share*held <= float64(cap(list)) {
 		return list
 	}
-	grown := min(1.1*r.share, r.most) * float64(len(list))
-	return slices.Grow(list, max(0, int(grown)-len(list)))
+	var element T
+	size := int64(unsafe.Sizeof(element))
+	more := min(int64(min(1.1*r.share, mostGrowth)*held)-int64(cap(list)), r.left/size)
+	if more <= 0 {
+		return list
+	}
+	r.left -= more * size
+	return slices.Grow(list, cap(list)+int(more)-len(list))
 }
 
 // withinMemory returns a *[LimitError] where the solution so far is larger than its budget.

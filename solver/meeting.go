@@ -101,23 +101,18 @@ func (p *path) slowest(r *region) float64 {
 func (k *kernel) exhausts(id int32, s side) float64 {
 	f := &k.fronts[id]
 	p := &k.paths[f.path]
-	known := &p.exhausts[s]
-	if !math.IsNaN(*known) {
-		return *known
-	}
 	up, down := &k.regions[f.up], &k.regions[f.down]
 	l, last, direction, focus := &p.up, up.upLabel, -1.0, up.focus()
 	if s == downSide {
 		l, last, direction, focus = &p.down, down.downLabel, 1, down.focus()
 	}
-	*known = focus
-	if !l.uniform() {
-		limit := min(k.horizon*(1+closeness), min(up.focus(), down.focus()))
-		dk := last - l.k
-		edge := line{x0: f.x0 + dk*l.s, t0: f.t0, speed: l.c + l.d*dk}
-		*known = min(focus, p.crossing(f.x0, f.t0, edge, s, direction, f.t0, limit, 0))
+	if l.uniform() {
+		return focus
 	}
-	return *known
+	limit := min(k.horizon*(1+closeness), min(up.focus(), down.focus()))
+	dk := last - l.k
+	edge := line{x0: f.x0 + dk*l.s, t0: f.t0, speed: l.c + l.d*dk}
+	return min(focus, p.crossing(f.x0, f.t0, edge, s, direction, f.t0, limit, 0))
 }
 
 // linesMeet: straight bounds meet where they cross.
