@@ -193,14 +193,17 @@ func growth(b *testing.B, r solver.Relation, sizes [][2]int) float64 {
 	return (last[1] - first[1]) / (last[0] - first[0])
 }
 
-// quickest of five solves, which other work on the machine disturbs least.
+// quickest of five turns, in each of which the solve is repeated for a twentieth of a second: so that all sizes bear
+// collections of garbage and other work on the machine alike.
 func quickest(b *testing.B, s solver.Scenario) (seconds, interactions float64) {
 	seconds = math.Inf(1)
 	for range 5 {
-		begin := time.Now()
-		solution := mustSolve(b, s)
-		seconds = math.Min(seconds, time.Since(begin).Seconds())
-		interactions = float64(solution.Stats().Interactions)
+		solves, begin := 0.0, time.Now()
+		for solves == 0 || time.Since(begin) < time.Second/20 {
+			interactions = float64(mustSolve(b, s).Stats().Interactions)
+			solves++
+		}
+		seconds = math.Min(seconds, time.Since(begin).Seconds()/solves)
 	}
 	return seconds, interactions
 }
