@@ -146,45 +146,39 @@ func (k *kernel) coincide(r *region, gap, closing float64) bool {
 // profile's focus, that has happened for certain.
 func (k *kernel) labelsMeet(up, down int32, limit float64) float64 {
 	a, b := &k.fronts[up], &k.fronts[down]
+	if k.paths[a.path].oneCurve && k.paths[b.path].oneCurve {
+		return k.continuedMeet(a, b, limit)
+	}
 	gap := func(t float64) float64 { return k.place(b, t) - k.place(a, t) }
-	now := gap(k.now)
-	if now <= 0 {
+	if gap(k.now) <= 0 {
 		return k.now
 	}
-	limit = min(limit, min(k.endsBy(up, upSide), k.endsBy(down, downSide)))
-	p, q := &k.paths[a.path], &k.paths[b.path]
-	if p.oneCurve && q.oneCurve {
-		last := gap(limit)
-		if last > 0 {
-			return math.Inf(1)
-		}
-		closing := func(t float64) (value, slope float64) {
-			x, v := p.onward(t - a.t0)
-			y, w := q.onward(t - b.t0)
-			return (b.x0 + y) - (a.x0 + x), w - v
-		}
-		return newtonRoot(closing, k.now, limit, now, last)
-	}
 	consumed := min(k.exhausts(up, downSide), k.exhausts(down, upSide))
+	limit = min(limit, min(k.exhausts(up, upSide), k.exhausts(down, downSide)))
 	if consumed > limit && gap(limit) > 0 {
 		return math.Inf(1)
 	}
 	return fallingRoot(gap, k.now, min(consumed, limit))
 }
 
-// endsBy is a time by which a shock has ended or is no longer what it is now, and up to which its path is one of a
-// shock: when the region on one side of it is used up, which the agenda knows unless that region is new too.
-func (k *kernel) endsBy(id int32, s side) float64 {
-	f := &k.fronts[id]
-	g := f.up
-	if s == downSide {
-		g = f.down
+// continuedMeet is labelsMeet where all densities are on one curve: the paths are those of shocks for as long as one
+// likes, and where one of them ends before they meet, that is an event of its own.
+func (k *kernel) continuedMeet(a, b *front, limit float64) float64 {
+	p, q := &k.paths[a.path], &k.paths[b.path]
+	gap := func(t float64) (value, slope float64) {
+		x, v := p.onward(t - a.t0)
+		y, w := q.onward(t - b.t0)
+		return (b.x0 + y) - (a.x0 + x), w - v
 	}
-	due := k.bounds[g].due
-	if math.IsNaN(due) || s == downSide && f.t0 == k.now || !k.paths[f.path].oneCurve {
-		return k.exhausts(id, s)
+	now, _ := gap(k.now)
+	if now <= 0 {
+		return k.now
 	}
-	return max(k.now, due) + 2*k.slack()
+	last, _ := gap(limit)
+	if last > 0 {
+		return math.Inf(1)
+	}
+	return newtonRoot(gap, k.now, limit, now, last)
 }
 
 // pathsMeet: two curved shocks with a uniform state between them, whose other sides are profiles. Each one's
