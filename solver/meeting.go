@@ -146,7 +146,7 @@ func (k *kernel) coincide(r *region, gap, closing float64) bool {
 // profile's focus, that has happened for certain.
 func (k *kernel) labelsMeet(up, down int32, limit float64) float64 {
 	a, b := &k.fronts[up], &k.fronts[down]
-	if k.paths[a.path].oneCurve && k.paths[b.path].oneCurve {
+	if k.paths[a.path].oneCurve && k.paths[b.path].oneCurve && limit >= k.horizon {
 		return k.continuedMeet(a, b, limit)
 	}
 	gap := func(t float64) float64 { return k.place(b, t) - k.place(a, t) }
@@ -161,8 +161,8 @@ func (k *kernel) labelsMeet(up, down int32, limit float64) float64 {
 	return fallingRoot(gap, k.now, min(consumed, limit))
 }
 
-// continuedMeet is labelsMeet where all densities are on one curve: the paths are those of shocks for as long as one
-// likes, and where one of them ends before they meet, that is an event of its own.
+// continuedMeet is labelsMeet where all densities are on one curve and no profile around comes to its focus: the paths
+// are those of shocks for as long as one likes, and where one of them ends before they meet, that is an event of its own.
 func (k *kernel) continuedMeet(a, b *front, limit float64) float64 {
 	p, q := &k.paths[a.path], &k.paths[b.path]
 	gap := func(t float64) (value, slope float64) {
