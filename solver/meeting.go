@@ -55,7 +55,7 @@ func alongIf(r *region, bound int32, s side) side {
 // limit is the time up to which the paths around a region can be followed: a little beyond the horizon, or
 // when the characteristics of a profile involved meet.
 func (k *kernel) limit(b bound, r *region) float64 {
-	t := min(k.horizon*(1+closeness), r.focus())
+	t := min(k.lookahead(), r.focus())
 	if b.up >= 0 {
 		t = min(t, k.regions[k.fronts[b.up].up].focus())
 	}
@@ -96,6 +96,9 @@ func (p *path) slowest(r *region) float64 {
 	return min(r.waveSpeed(r.upLabel), r.waveSpeed(r.downLabel))
 }
 
+// lookahead is the time up to which paths are followed: a little beyond the horizon.
+func (k *kernel) lookahead() float64 { return k.horizon * (1 + closeness) }
+
 // exhausts is when a shock has consumed the last density of the profile on one side of it, +Inf where it never
 // does. Up to then the densities beside it lie on the relation, so that it is a true shock and consumes more.
 func (k *kernel) exhausts(id int32, s side) float64 {
@@ -109,7 +112,7 @@ func (k *kernel) exhausts(id int32, s side) float64 {
 	if l.uniform() {
 		return focus
 	}
-	limit := min(k.horizon*(1+closeness), min(up.focus(), down.focus()))
+	limit := min(k.lookahead(), min(up.focus(), down.focus()))
 	dk := last - l.k
 	edge := line{x0: f.x0 + dk*l.s, t0: f.t0, speed: l.c + l.d*dk}
 	return min(focus, p.crossing(f.x0, f.t0, edge, s, direction, f.t0, limit, 0))
@@ -146,7 +149,7 @@ func (k *kernel) coincide(r *region, gap, closing float64) bool {
 // profile's focus, that has happened for certain.
 func (k *kernel) labelsMeet(up, down int32, limit float64) float64 {
 	a, b := &k.fronts[up], &k.fronts[down]
-	if k.paths[a.path].oneCurve && k.paths[b.path].oneCurve && limit >= k.horizon {
+	if k.paths[a.path].oneCurve && k.paths[b.path].oneCurve && limit == k.lookahead() {
 		return k.continuedMeet(a, b, limit)
 	}
 	gap := func(t float64) float64 { return k.place(b, t) - k.place(a, t) }
