@@ -21,7 +21,10 @@ func (s *Solution) Characteristic(x, t float64) (Characteristic, error) {
 	}
 	up, down, onFront := s.locate(x, t)
 	out := Characteristic{Points: []Point{{x, t}}}
-	if onFront && up != down && s.waveAt(up, x, t) > s.waveAt(down, x, t) {
+	into, from := s.waveAt(up, x, t), s.waveAt(down, x, t)
+	_, atNode := s.nodeAt(x)
+	sentOut := atNode && from > 0 // by the node, whatever rests on its upstream side
+	if onFront && up != down && into > from && !sentOut {
 		out.EndsBy = Merged
 		return out, nil
 	}
@@ -65,7 +68,7 @@ func (w *wavePath) follow() FrontEnd {
 	if t, node := s.nodeReached(own, seg); t <= until {
 		until, ends, w.node, w.fromUp = t, AtNode, node, own.speed > 0
 	}
-	if t := s.swallowed(seg, own, until); t < until {
+	if t := s.swallowed(w.region, own, until); t < until {
 		until, ends = t, Merged
 	}
 	w.x, w.t = own.at(until), until
@@ -86,10 +89,10 @@ func (s *Solution) nodeReached(l line, seg int32) (float64, int32) {
 	return math.Inf(1), -1
 }
 
-// swallowed is the first time before until at which a shock meets the wave. Waves never meet other fronts:
-// edges and contacts are waves themselves.
-func (s *Solution) swallowed(seg int32, l line, until float64) float64 {
-	index := &s.index[seg]
+// swallowed is the first time before until at which a shock meets the wave of a region. Waves never meet other
+// fronts: edges and contacts are waves themselves.
+func (s *Solution) swallowed(g int32, l line, until float64) float64 {
+	index := &s.index[s.regions[g].seg]
 	for i := range index.starts {
 		if i+1 < len(index.starts) && index.starts[i+1] < l.t0 {
 			continue
@@ -99,15 +102,15 @@ func (s *Solution) swallowed(seg int32, l line, until float64) float64 {
 		}
 		for _, id := range index.fronts[index.first[i]:index.first[i+1]] {
 			if f := &s.fronts[id]; f.kind == Shock {
-				until = min(until, s.shockMeets(f, l, until))
+				until = min(until, s.shockMeets(f, g, l, until))
 			}
 		}
 	}
 	return until
 }
 
-// shockMeets is when a shock meets a wave within the life of both, +Inf where it does not.
-func (s *Solution) shockMeets(f *front, l line, until float64) float64 {
+// shockMeets is when a shock meets a wave of a region within the life of both, +Inf where it does not.
+func (s *Solution) shockMeets(f *front, g int32, l line, until float64) float64 {
 	from, until := max(l.t0, f.t0), min(until, f.end)
 	if from >= until {
 		return math.Inf(1)
@@ -118,6 +121,11 @@ func (s *Solution) shockMeets(f *front, l line, until float64) float64 {
 			return from // the wave is at the place where the shock is born
 		}
 		ahead = l.speed - s.velocity(f, from)
+		// Between a node and a shock that rests on it a region has no width: its waves run into the shock at once.
+		tolerance := s.segments[f.seg].speedTolerance
+		if g == f.up && ahead > tolerance || g == f.down && ahead < -tolerance {
+			return from
+		}
 	}
 	if f.path < 0 {
 		closing := f.speed - l.speed
@@ -136,20 +144,19 @@ func within(t, until float64) float64 {
 	return math.Inf(1)
 }
 
-// pass takes the wave over the node that it arrived at; false where it ends there.
+// pass takes the wave over the node that it arrived at; false where it ends there: where the node governs, or a shock
+// arrives at the node together with the wave, so that beyond it waves come the other way.
 func (w *wavePath) pass() bool {
 	s := w.sol
-	p := s.nodes[w.node].at(w.t)
+	n := &s.nodes[w.node]
+	p := n.at(w.t)
+	next, governs, direction := p.up, BySupply, -1.0
 	if w.fromUp {
-		if p.governs != ByDemand || p.down < 0 || s.segments[s.regions[w.region].seg].diagram.congested <= int(s.regions[w.region].piece) {
-			return false
-		}
-		w.region = p.down
-		return true
+		next, governs, direction = p.down, ByDemand, 1
 	}
-	if p.governs != BySupply || p.up < 0 {
+	if p.governs != governs || next < 0 || s.waveAt(next, n.x, w.t)*direction < 0 {
 		return false
 	}
-	w.region = p.up
+	w.region = next
 	return true
 }

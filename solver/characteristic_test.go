@@ -159,3 +159,29 @@ func TestCharacteristicsOutsideAreRefused(t *testing.T) {
 		}
 	}
 }
+
+// Fans of the entry and of the exit, mirror images, come together at a join half way: the shock between them rests on
+// it. Waves end there, from both sides.
+func TestCharacteristicsEndAtAShockThatRestsOnAJoin(t *testing.T) {
+	road := must(solver.Greenshields(16, 0.5))(t)
+	s := must(solver.Solve(t.Context(), solver.Scenario{
+		Segments: []solver.Segment{{Length: 400, Relation: road}, {Length: 400, Relation: road}},
+		Entry:    solver.Entry{Demand: solver.Schedule{{Rate: road.Capacity()}}},
+		Initial: solver.Initial{Profile: []solver.ProfilePiece{
+			{Start: 0, End: 400, StartDensity: 0.125, EndDensity: 0.125},
+			{Start: 400, End: 600, StartDensity: 0, EndDensity: 0.5},
+			{Start: 600, End: 800, StartDensity: 0.5, EndDensity: 0.5},
+		}},
+		Horizon: 200,
+	}, solver.Budget{}))(t)
+	at := must(s.At(400, 80))(t)
+	if !(at.Up.Density < 0.25 && at.Down.Density > 0.25) {
+		t.Fatalf("no shock rests on the join: %+v", at)
+	}
+	if !at.OnFront {
+		t.Errorf("the join is not said to be on a front: %+v", at)
+	}
+	// The wave of 5 m/s of either fan is at the join at 80 s.
+	followed(t, s, 300, 60, solver.Merged, point(300, 60), point(400, 80), point(400, 80))
+	followed(t, s, 500, 60, solver.Merged, point(500, 60), point(400, 80))
+}

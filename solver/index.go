@@ -109,6 +109,20 @@ func (s *Solution) locateWithin(seg int32, x, t float64) (up, down int32, onFron
 	return g, g, false
 }
 
+// restingOn returns the outermost of the fronts of a segment that rest on a node at its end, -1 for none. One that is
+// just being born there does not rest.
+func (s *Solution) restingOn(n *node, seg int32, t float64) (lowest, highest int32) {
+	on := closeness * (s.segments[seg].end - s.segments[seg].start)
+	lowest, highest = -1, -1
+	for _, id := range s.index[seg].at(t) {
+		f := &s.fronts[id]
+		if f.exists(t) && t-f.t0 > n.slack && math.Abs(s.place(f, t)-n.x) <= on {
+			lowest, highest = s.outermost(lowest, highest, id, t)
+		}
+	}
+	return lowest, highest
+}
+
 // outermost widens a run of fronts at one place by another.
 func (s *Solution) outermost(lowest, highest, id int32, t float64) (int32, int32) {
 	if lowest < 0 {

@@ -126,19 +126,40 @@ func (s *Solution) stateOf(seg int32, piece int, k float64) State {
 
 // locate returns the regions just upstream and just downstream of the point, and whether it lies on a front.
 func (s *Solution) locate(x, t float64) (up, down int32, onFront bool) {
-	i := sort.Search(len(s.nodes), func(i int) bool { return s.nodes[i].x >= x-samePlace })
-	if i < len(s.nodes) && math.Abs(s.nodes[i].x-x) <= samePlace {
-		p := s.nodes[i].at(t)
-		up, down = p.up, p.down
-		if up < 0 {
-			up = down
-		}
-		if down < 0 {
-			down = up
-		}
-		return up, down, false
+	i, there := s.nodeAt(x)
+	if there {
+		return s.locateAt(&s.nodes[i], t)
 	}
 	return s.locateWithin(int32(i-1), x, t)
+}
+
+// nodeAt is the first node that does not lie upstream of a place, and whether it is there.
+func (s *Solution) nodeAt(x float64) (i int, there bool) {
+	i = sort.Search(len(s.nodes), func(i int) bool { return s.nodes[i].x >= x-samePlace })
+	return i, i < len(s.nodes) && math.Abs(s.nodes[i].x-x) <= samePlace
+}
+
+// locateAt does so at a node: where a front rests on it, what stands between the two has no width and is passed over.
+func (s *Solution) locateAt(n *node, t float64) (up, down int32, onFront bool) {
+	p := n.at(t)
+	up, down = p.up, p.down
+	if n.upSeg >= 0 {
+		if lowest, _ := s.restingOn(n, n.upSeg, t); lowest >= 0 {
+			up, onFront = s.fronts[lowest].up, true
+		}
+	}
+	if n.downSeg >= 0 {
+		if _, highest := s.restingOn(n, n.downSeg, t); highest >= 0 {
+			down, onFront = s.fronts[highest].down, true
+		}
+	}
+	if up < 0 {
+		up = down
+	}
+	if down < 0 {
+		down = up
+	}
+	return up, down, onFront
 }
 
 // at is what stands on the two sides of the node at time t.
