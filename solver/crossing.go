@@ -19,7 +19,12 @@ func (p *path) crossing(x0, t0 float64, l line, along side, direction, now, limi
 	if now == t0 && p.passed(e, l.speed, direction) {
 		return now
 	}
-	c := p.differenceAlong(e, l.speed, along)
+	var c cubic
+	if p.oneCurve {
+		c = p.onCurve(e, l.speed, along)
+	} else {
+		c = p.differenceAlong(e, l.speed, along)
+	}
 	for c[0] == 0 && (c[1] != 0 || c[2] != 0 || c[3] != 0) {
 		c = cubic{c[1], c[2], c[3], 0}
 	}
@@ -29,8 +34,10 @@ func (p *path) crossing(x0, t0 float64, l line, along side, direction, now, limi
 	}
 	roots, n := c.roots(max(0, now-t0-slack), min(p.until, limit-t0))
 	for _, T := range roots[:n] {
-		X := e + l.speed*T
-		if p.down.density(X, T)-p.up.density(X, T) > closeness*(p.down.k+p.up.k) {
+		if p.isShock(e, l.speed, T) {
+			if p.oneCurve && along == neither {
+				T = p.refined(e, l.speed, T)
+			}
 			return max(now, t0+T)
 		}
 	}
@@ -40,8 +47,7 @@ func (p *path) crossing(x0, t0 float64, l line, along side, direction, now, limi
 // passed reports whether the shock is born beyond a line at distance e and still leaving it behind: a rounding
 // has hidden that they meet right here.
 func (p *path) passed(e, speed, direction float64) bool {
-	jump := p.up.k - p.down.k
-	return e*direction < 0 && jump != 0 && (speed-p.jumpFlow()/jump)*direction < 0
+	return e*direction < 0 && p.up.k != p.down.k && (speed-p.birthSpeed())*direction < 0
 }
 
 // setsOut reports whether the shock, born on a line, goes to that side of it on which it may not be: by its speed,
@@ -56,7 +62,7 @@ func (p *path) setsOut(speed, direction float64) bool {
 	if jump <= closeness*(p.down.k+p.up.k) {
 		return false
 	}
-	v := -p.jumpFlow() / jump
+	v := p.birthSpeed()
 	if d := v - speed; math.Abs(d) > closeness*(math.Abs(p.up.c)+math.Abs(p.down.c)+math.Abs(v)) {
 		return d*direction > 0
 	}
@@ -65,6 +71,72 @@ func (p *path) setsOut(speed, direction float64) bool {
 }
 
 func square(x float64) float64 { return x * x }
+
+// birthSpeed of a shock that is born with a jump: the chord slope.
+func (p *path) birthSpeed() float64 {
+	if p.oneCurve {
+		return p.upWave + 0.5*p.waveGap
+	}
+	return p.jumpFlow() / (p.up.k - p.down.k)
+}
+
+// isShock reports whether the shock is on the line at distance e at birth with that speed, at a time T at which one of the
+// two roots of the path is.
+func (p *path) isShock(e, speed, T float64) bool {
+	if p.oneCurve {
+		return ((speed-p.upWave)*T+e)*((p.upWave-speed+p.waveGap)*T-e) > 0
+	}
+	X := e + speed*T
+	return p.down.density(X, T)-p.up.density(X, T) > closeness*(p.down.k+p.up.k)
+}
+
+// refined takes one Newton's step towards where a shock on one curve is on the line. Of a weak shock the root of the path
+// is nearly double, good to half the digits only; its place is free of that.
+func (p *path) refined(e, speed, T float64) float64 {
+	X, v := p.onward(T)
+	if step := (e + speed*T - X) / (speed - v); math.Abs(step) <= halfDigits*T {
+		return T - step
+	}
+	return T
+}
+
+// onCurve is zero where a shock on one curve, or the other root of its path, is on the line. With A = v-cU and B = cD-v
+// that is where h/g, the square of 1/w-1 (see path.weight), is ((B T-e)/(A T+e))²; with its denominators, a common
+// factor T and that of a side along which the line runs taken out, it is at most quadratic.
+func (p *path) onCurve(e, v float64, along side) cubic {
+	a := v - p.upWave
+	b := p.waveGap - a
+	faster := a - b // twice by how much the line is faster than the shock at birth
+	if e == 0 && math.Abs(faster) <= closeness*(math.Abs(a)+math.Abs(b)) {
+		faster = 0
+	}
+	up, down := p.up.s, p.down.s
+	d := p.up.d + p.down.d // of the profile, where one side is uniform
+	switch {
+	case p.up.uniform():
+		if along == downSide {
+			return cubic{e * (2*down*a - e*d), down * a * a}
+		}
+		return cubic{e * (2*down*p.waveGap + e*d), down*p.waveGap*faster + 2*d*e*a, d * a * a}
+	case p.down.uniform():
+		if along == upSide {
+			return cubic{-e * (2*up*b + e*d), up * b * b}
+		}
+		return cubic{e * (2*up*p.waveGap - e*d), up*p.waveGap*faster + 2*d*e*b, -d * b * b}
+	}
+	d = p.up.d
+	switch along {
+	case downSide:
+		return cubic{e * (2*up*down*a - e*d*(up+down)), up*down*a*a - d*d*e*e}
+	case upSide:
+		return cubic{-e * (2*up*down*b + e*d*(up+down)), up*down*b*b - d*d*e*e}
+	}
+	return cubic{
+		e * (2*up*down*p.waveGap + d*e*(up-down)),
+		up*down*p.waveGap*faster + 2*d*e*(up*a+down*b),
+		d * (up*p.waveGap*faster + (up-down)*b*b),
+	}
+}
 
 // differenceAlong is the difference of the counts of the two sides along a line, times its denominators.
 func (p *path) differenceAlong(e, v float64, along side) cubic {

@@ -62,8 +62,6 @@ type path struct {
 	up, down        local
 	frame, relSpeed float64 // speed of the frame, and c' of the downstream side in it
 	frameJumpFlow   float64 // qU - qD at birth, in the frame
-	// steadyWave is the wave speed of the side that is uniform, where there is one.
-	steadyWave float64
 	// until is the time after birth at which the formula's shock would have no jump left. One of the sides is
 	// used up before; past it the formula follows a root that is no shock.
 	until float64
@@ -73,6 +71,11 @@ type path struct {
 	// oneCurve means that the states of both sides are on one parabola. Continued beyond what its sides hold, the
 	// shock then stays one, of the continued parabola, and its jump never vanishes.
 	oneCurve bool
+	// upWave is the wave speed upstream at birth, waveGap by how much that downstream is greater: it is negative.
+	upWave, waveGap float64
+	// upRate and downRate are the rates d/s at which the spreads of the sides grow by the spread at birth; 0 for a
+	// uniform side.
+	upRate, downRate float64
 }
 
 // begin makes the path that of a shock born at time t between two regions with densities ku and kd there. A jump of
@@ -83,28 +86,44 @@ func (p *path) begin(u, d *region, ku, kd, t float64, seg *segment) {
 	if math.Abs(p.down.k-p.up.k) <= seg.densityTolerance {
 		p.down.k = p.up.k
 	}
-	p.frame = p.down.c
-	if p.up.uniform() {
-		p.steadyWave = seg.diagram.pieces[u.piece].waveSpeed(p.up.k)
-	} else {
-		p.frame = p.up.c
-	}
-	if p.down.uniform() {
-		p.steadyWave = seg.diagram.pieces[d.piece].waveSpeed(p.down.k)
-	} else {
-		p.relSpeed = p.down.c - p.frame
-	}
-	p.oneCurve = seg.diagram.oneCurve(int(u.piece), int(d.piece))
-	p.setJumpFlow(seg)
-	p.until = p.lastsUntil()
 	p.near = closeness * (math.Abs(seg.start) + math.Abs(seg.end))
+	waves := &seg.diagram.pieces[u.piece]
+	p.upWave, p.waveGap = waves.waveSpeed(p.up.k), waves.d*(p.down.k-p.up.k)
+	p.oneCurve = seg.diagram.oneCurve(int(u.piece), int(d.piece))
+	if p.oneCurve {
+		p.continueCurve(seg)
+	} else {
+		p.followCounts(seg)
+	}
 }
 
-// setJumpFlow sets the jump of flow. In the frame, which is the wave speed of one side, the jump is how far the
-// other side lies below that one's tangent: a sum of terms of one sign, right to the last digit also where the
-// densities nearly agree. A jump of flow at rest below the segment's tolerance is taken as none where the waves of
-// both sides come to a shock at rest.
-func (p *path) setJumpFlow(seg *segment) {
+// continueCurve completes the path of a shock on one curve. One that rests but for a rounding rests.
+func (p *path) continueCurve(seg *segment) {
+	p.until = math.Inf(1)
+	if !p.up.uniform() {
+		p.upRate = p.up.d / p.up.s
+	}
+	if !p.down.uniform() {
+		p.downRate = p.down.d / p.down.s
+	}
+	rests := p.upWave >= -seg.speedTolerance && p.upWave+p.waveGap <= seg.speedTolerance
+	if rests && math.Abs(p.birthSpeed()*(p.down.k-p.up.k)) <= seg.flowTolerance {
+		p.upWave = -0.5 * p.waveGap
+	}
+}
+
+// followCounts completes the path of a shock between two different curves. In the frame, which is the wave speed of
+// one side, the jump of flow is how far the other side lies below that one's tangent: a sum of terms of one sign, right
+// to the last digit also where the densities nearly agree. A jump of flow at rest below the segment's tolerance is taken
+// as none where the waves of both sides come to a shock at rest.
+func (p *path) followCounts(seg *segment) {
+	p.frame = p.down.c
+	if !p.up.uniform() {
+		p.frame = p.up.c
+	}
+	if !p.down.uniform() {
+		p.relSpeed = p.down.c - p.frame
+	}
 	d := seg.diagram
 	u, w := int(p.upPiece), int(p.downPiece)
 	if p.up.uniform() {
@@ -116,6 +135,7 @@ func (p *path) setJumpFlow(seg *segment) {
 	if rests && math.Abs(p.jumpFlow()) <= seg.flowTolerance {
 		p.frameJumpFlow = -p.frame * (p.up.k - p.down.k)
 	}
+	p.until = p.lastsUntil()
 }
 
 // jumpFlow is the jump qU - qD of flow at birth, at rest.
@@ -125,7 +145,7 @@ func (p *path) jumpFlow() float64 { return p.frameJumpFlow + p.frame*(p.up.k-p.d
 // quadratic with none, once multiplied by the spreads of the two sides.
 func (p *path) lastsUntil() float64 {
 	jump := p.down.k - p.up.k
-	if jump == 0 || p.oneCurve {
+	if jump == 0 {
 		return math.Inf(1)
 	}
 	square := jump * jump // at birth
@@ -166,6 +186,9 @@ func (p *path) offset(T float64) float64 {
 	if T <= 0 {
 		return 0
 	}
+	if p.oneCurve {
+		return T * (p.upWave + p.waveGap*p.weight(1+p.upRate*T, 1+p.downRate*T))
+	}
 	mU, mD := p.up.gradient(T), p.down.gradient(T)
 	jump := p.down.k - p.up.k
 	dm := mD - mU
@@ -183,18 +206,27 @@ func (p *path) offset(T float64) float64 {
 	return p.frame*T + (root-b)/dm
 }
 
-// onward is the offset and the speed of a shock between states of one curve, a time T after birth: on a parabola the
-// chord slope is the mean of the wave speeds at its ends.
+// weight says where a shock on one curve lies between the two characteristics that it was born of, 0 for the upstream
+// one and 1 for the downstream one, when the spreads of its sides have grown g and h times. With d (kD-kU) for c' the
+// quadratic of path loses all its differences of like terms:
+//
+//	X/T = cU + (cD-cU) sqrt(g)/(sqrt(g)+sqrt(h)),
+//
+// which stays right to the last digit however long the shock lives and however weak it becomes.
+func (p *path) weight(g, h float64) float64 {
+	if g == h {
+		return 0.5 // also where both profiles are at their focus
+	}
+	return 1 / (1 + math.Sqrt(max(0, h)/max(0, g)))
+}
+
+// onward is the offset and the speed of a shock on one curve a time T after birth. The chord slope of a parabola is the
+// mean of the wave speeds at its ends.
 func (p *path) onward(T float64) (offset, speed float64) {
-	X := p.offset(T)
-	up, down := p.steadyWave, p.steadyWave
-	if !p.up.uniform() {
-		up = p.up.waveSpeed(X, T)
-	}
-	if !p.down.uniform() {
-		down = p.down.waveSpeed(X, T)
-	}
-	return X, 0.5 * (up + down)
+	T = max(0, T)
+	g, h := 1+p.upRate*T, 1+p.downRate*T
+	w := p.weight(g, h)
+	return T * (p.upWave + p.waveGap*w), p.upWave + 0.5*p.waveGap*(1+w*(1-1/g)-(1-w)*(1-1/h))
 }
 
 // line is a straight path through (x0, t0).
@@ -221,6 +253,10 @@ func (p *plane) velocity(f *front, t float64) float64 {
 	}
 	shock := &p.paths[f.path]
 	T := t - f.t0
+	if shock.oneCurve {
+		_, speed := shock.onward(T)
+		return speed
+	}
 	X := shock.offset(T)
 	d := p.segments[f.seg].diagram
 	return d.secant(int(shock.upPiece), shock.up.density(X, T), int(shock.downPiece), shock.down.density(X, T))

@@ -70,30 +70,30 @@ func (k *kernel) limit(b bound, r *region) float64 {
 func (k *kernel) fallsBehind(id int32, speed float64) bool {
 	f := &k.fronts[id]
 	p := &k.paths[f.path]
-	return p.oneCurve && 0.5*(p.fastest(&k.regions[f.up])+p.fastest(&k.regions[f.down])) <= speed
+	return p.oneCurve && 0.5*(k.regions[f.up].fastest(p.upWave)+k.regions[f.down].fastest(p.upWave+p.waveGap)) <= speed
 }
 
 // runsAhead reports the same for a line of that speed behind it.
 func (k *kernel) runsAhead(id int32, speed float64) bool {
 	f := &k.fronts[id]
 	p := &k.paths[f.path]
-	return p.oneCurve && 0.5*(p.slowest(&k.regions[f.up])+p.slowest(&k.regions[f.down])) >= speed
+	return p.oneCurve && 0.5*(k.regions[f.up].slowest(p.upWave)+k.regions[f.down].slowest(p.upWave+p.waveGap)) >= speed
 }
 
-// fastest wave of all that a side of the shock holds.
-func (p *path) fastest(r *region) float64 {
-	if r.uniform() {
-		return p.steadyWave
+// fastest of the waves that a region holds; its only one, given, where it is uniform.
+func (g *region) fastest(only float64) float64 {
+	if g.uniform() {
+		return only
 	}
-	return max(r.waveSpeed(r.upLabel), r.waveSpeed(r.downLabel))
+	return max(g.waveSpeed(g.upLabel), g.waveSpeed(g.downLabel))
 }
 
-// slowest wave of all that a side of the shock holds.
-func (p *path) slowest(r *region) float64 {
-	if r.uniform() {
-		return p.steadyWave
+// slowest of the waves that a region holds; its only one, given, where it is uniform.
+func (g *region) slowest(only float64) float64 {
+	if g.uniform() {
+		return only
 	}
-	return min(r.waveSpeed(r.upLabel), r.waveSpeed(r.downLabel))
+	return min(g.waveSpeed(g.upLabel), g.waveSpeed(g.downLabel))
 }
 
 // lookahead is the time up to which paths are followed: a little beyond the horizon.

@@ -116,9 +116,6 @@ func (l *local) flow() float64 { return l.r + l.k*l.c }
 // density a distance X and a time T from the point.
 func (l *local) density(X, T float64) float64 { return l.k + (X-l.c*T)*l.gradient(T) }
 
-// waveSpeed a distance X and a time T from the point.
-func (l *local) waveSpeed(X, T float64) float64 { return l.c + l.d*(X-l.c*T)*l.gradient(T) }
-
 // count of vehicles between the point and (X, T) from it: N(there) - N(point).
 func (l *local) count(X, T float64) float64 {
 	xi := X - l.c*T

@@ -12,7 +12,7 @@ var fallingShapes = map[string]func(t, root float64) float64{
 	"straight": func(t, root float64) float64 { return root - t },
 	"bent":     func(t, root float64) float64 { return (root - t) * (1 + 0.01*t) },
 	"steep":    func(t, root float64) float64 { return math.Exp(-20*t) - math.Exp(-20*root) },
-	"flat":     func(t, root float64) float64 { return math.Pow(root-t, 3) },
+	"flat":     func(t, root float64) float64 { return (root - t) * (root - t) * (root - t) },
 	"rounded":  func(t, root float64) float64 { return (1e6 + root - t) - 1e6 },
 }
 
