@@ -7,16 +7,26 @@ import (
 
 // peakLength finds the earliest time at which the outermost tail is furthest from the node.
 func (q *Queue) peakLength() {
-	s := q.sol
-	at, lowest := q.Start, math.Inf(1)
+	lowest, at := q.sol.furthestTail(q.strips, q.Start, q.End)
+	q.PeakLength, q.PeakLengthTime = q.sol.nodes[q.node].x-lowest, at
+}
+
+// furthestTail is the most upstream place of any tail of the strips between two times, and the earliest time at
+// which one is there; the place is +Inf where no tail is there at all.
+func (s *Solution) furthestTail(strips []*strip, from, to float64) (lowest, at float64) {
+	lowest, at = math.Inf(1), to
 	slack := closeness * (s.nodes[len(s.nodes)-1].x - s.nodes[0].x)
 	look := func(t, place float64) {
 		if place < lowest-slack || place < lowest+slack && t < at {
 			at, lowest = t, min(place, lowest)
 		}
 	}
-	for _, p := range q.strips {
+	for _, p := range strips {
 		for _, one := range s.parts(p, p.tails) {
+			one.from, one.to = max(one.from, from), min(one.to, to)
+			if one.to <= one.from {
+				continue
+			}
 			look(one.from, s.boundPlace(one.bound, one.from))
 			look(one.to, s.boundPlace(one.bound, one.to))
 			if one.bound >= 0 && s.fronts[one.bound].path >= 0 {
@@ -24,7 +34,7 @@ func (q *Queue) peakLength() {
 			}
 		}
 	}
-	q.PeakLength, q.PeakLengthTime = s.nodes[q.node].x-lowest, at
+	return lowest, at
 }
 
 // turningParts is into how many parts the life of a curved front is cut in search of the places where it turns.

@@ -131,7 +131,7 @@ func (g *Signal) schedule(horizon float64) Schedule {
 	out := make(Schedule, 1, 1+2*len(g.Plan.Greens)*int(cycles))
 	out[0] = SchedulePiece{Start: math.Inf(-1)}
 	green := func(start, end float64) {
-		if end <= 0 || start > horizon {
+		if end < 0 || start > horizon {
 			return
 		}
 		if last := &out[len(out)-1]; start <= last.Start+closeness*horizon {

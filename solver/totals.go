@@ -1,6 +1,9 @@
 package solver
 
-import "math"
+import (
+	"math"
+	"sort"
+)
 
 // Totals are exact integrals over a stretch of road from time 0.
 type Totals struct {
@@ -108,16 +111,20 @@ func (n *node) side(p *passage) int32 {
 func (s *Solution) nodeMoments(t float64) []float64 {
 	out := make([]float64, len(s.nodes))
 	for i := range s.nodes {
-		n := &s.nodes[i]
-		for j := range n.history {
-			p := &n.history[j]
-			if p.from >= t {
-				break
-			}
-			out[i] += s.timeMoment(n.side(p), n.x, p.from, min(t, s.until(n, j)))
-		}
+		out[i] = s.nodeMoment(&s.nodes[i], 0, t)
 	}
 	return out
+}
+
+// nodeMoment is the integral of the count at a node from a to b.
+func (s *Solution) nodeMoment(n *node, a, b float64) float64 {
+	sum := 0.0
+	first := sort.Search(len(n.history), func(i int) bool { return n.history[i].from > a }) - 1
+	for i := max(0, first); i < len(n.history) && n.history[i].from < b; i++ {
+		p := &n.history[i]
+		sum += s.timeMoment(n.side(p), n.x, max(a, p.from), min(b, s.until(n, i)))
+	}
+	return sum
 }
 
 // timeMoment is the integral of the count of a region at place x over time from a to b.
