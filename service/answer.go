@@ -40,6 +40,8 @@ func (a *answerer) answer(q *pb.Question) (*pb.Answer, error) {
 		out.Found, err = a.characteristics(x.Characteristics)
 	case *pb.Question_Totals:
 		out.Found, err = a.totals(x.Totals)
+	case *pb.Question_Cycles:
+		out.Found, err = a.cycles(x.Cycles)
 	}
 	return out, err
 }

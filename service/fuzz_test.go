@@ -73,6 +73,7 @@ func askEverything(req *pb.SolveRequest) {
 		{Ask: &pb.Question_TravelTimes{TravelTimes: &pb.TravelTimesQuestion{DeparturesS: times}}},
 		{Ask: &pb.Question_Characteristics{Characteristics: &pb.CharacteristicsQuestion{Starts: points}}},
 		{Ask: &pb.Question_Totals{Totals: &pb.TotalsQuestion{TimesS: times}}},
+		{Ask: &pb.Question_Cycles{Cycles: &pb.CyclesQuestion{}}},
 	}
 }
 

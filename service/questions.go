@@ -84,6 +84,8 @@ func (c *questionChecker) question(q *pb.Question, s *pb.Scenario, field string)
 	case *pb.Question_Totals:
 		c.times(x.Totals.GetTimesS(), field+".totals.times_s")
 		c.items += len(x.Totals.GetTimesS()) * (1 + len(s.GetSegments()))
+	case *pb.Question_Cycles:
+		c.cycles(x.Cycles, s, field+".cycles")
 	default:
 		c.bad.required(field, "one thing to ask, such as queues")
 	}
@@ -122,6 +124,39 @@ func (c *questionChecker) queues(q *pb.QueuesQuestion, s *pb.Scenario, field str
 		nodes = len(s.GetSegments()) + len(s.GetBottlenecks()) + len(s.GetSignals()) + 1
 	}
 	c.items += nodes * (1 + len(q.GetTimesS()) + len(q.GetPlacesM()))
+}
+
+func (c *questionChecker) cycles(q *pb.CyclesQuestion, s *pb.Scenario, field string) {
+	names := make([]string, len(s.GetSignals()))
+	cycles := map[string]int{}
+	for i, g := range s.GetSignals() {
+		names[i] = g.GetName()
+		cycles[g.GetName()] = c.cyclesOf(g)
+	}
+	asked := q.GetSignals()
+	if len(asked) == 0 {
+		asked = names
+	}
+	for i, name := range asked {
+		count, known := cycles[name]
+		if !known {
+			c.bad.add(fmt.Sprintf("%s.signals[%d]", field, i), pb.FieldReason_FIELD_REASON_UNKNOWN, printText(name),
+				"a signal of the scenario: "+listed(names))
+		}
+		c.items += count
+	}
+}
+
+// cyclesOf is about how many cycles a signal has within the horizon; 0 where that cannot be told.
+func (c *questionChecker) cyclesOf(g *pb.Signal) int {
+	if p := g.GetCycle(); p != nil {
+		cycles := c.horizon / p.GetCycleS() * float64(len(p.GetGreens()))
+		if !(cycles >= 0 && cycles < math.MaxInt32) {
+			return 0 // refused as a plan
+		}
+		return 1 + int(cycles)
+	}
+	return 1 + len(g.GetWindows().GetGreens())
 }
 
 func (c *questionChecker) trajectories(q *pb.TrajectoriesQuestion, field string) {

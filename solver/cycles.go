@@ -18,6 +18,8 @@ type Cycle struct {
 	// BackOfQueue is the greatest distance from the stop line back to the outermost tail of the signal's queue during
 	// the cycle [m], and BackOfQueueTime the earliest time at which it is attained [s]; both are 0 without a queue.
 	BackOfQueue, BackOfQueueTime float64
+	// Ended is whether green ends by the horizon. Only then there is a Residual.
+	Ended bool
 	// Residual is the number of vehicles in the signal's queue when green ends: those that it did not serve. More than
 	// none is a cycle failure.
 	Residual float64
@@ -72,7 +74,8 @@ func (n *node) cycles(horizon float64) []Cycle {
 	red, green := math.Inf(-1), math.NaN() // when the phase that goes on began; green is NaN in red
 	add := func(end float64) {
 		if end > 0 && red < horizon {
-			out = append(out, Cycle{Start: within(red), Green: within(green), End: within(end), Complete: red >= 0 && end <= horizon})
+			ended := end <= horizon
+			out = append(out, Cycle{Start: within(red), Green: within(green), End: within(end), Complete: red >= 0 && ended, Ended: ended})
 		}
 	}
 	for _, p := range n.capacity.schedule {
@@ -100,7 +103,7 @@ func (s *Solution) fill(c *Cycle, i int, strips []*strip) {
 	}
 	n := &s.nodes[i]
 	c.Departed = s.countPast(n, c.End) - s.countPast(n, c.Start)
-	if left := s.queueState(i, strips, c.End).Vehicles; left > closeness*(1+math.Abs(s.countPast(n, c.End))) {
+	if left := s.queueState(i, strips, c.End).Vehicles; c.Ended && left > closeness*(1+math.Abs(s.countPast(n, c.End))) {
 		c.Residual = left
 	}
 	c.Delay = max(0, s.approachDelay(i, c.Start, c.End))

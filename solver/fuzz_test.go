@@ -117,6 +117,15 @@ func askEverything(t *testing.T, s solver.Scenario, solution *solver.Solution) {
 		if err := errors.Join(err, errAt, errReach); err != nil || math.IsNaN(state.Length+state.Vehicles) {
 			t.Errorf("queue of %s: %+v, %v", n.Name, state, err)
 		}
+		if cycles, err := solution.Cycles(n.Name); (err == nil) != (n.Kind == solver.SignalNode) || err == nil && len(cycles) == 0 {
+			t.Errorf("cycles of %s: %+v, %v", n.Name, cycles, err)
+		} else {
+			for _, c := range cycles {
+				if math.IsNaN(c.BackOfQueue + c.Residual + c.Departed + c.Delay) {
+					t.Errorf("cycle of %s: %+v", n.Name, c)
+				}
+			}
+		}
 		for _, q := range queues {
 			if math.IsNaN(q.PeakLength + q.PeakVehicles + q.End) {
 				t.Errorf("queue of %s: %+v", n.Name, q)

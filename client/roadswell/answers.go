@@ -16,6 +16,8 @@ func answerText(a *pb.Answer) string {
 		return travelTimesText(found.TravelTimes)
 	case *pb.Answer_Totals:
 		return totalsText(found.Totals)
+	case *pb.Answer_Cycles:
+		return cyclesText(found.Cycles)
 	case *pb.Answer_States:
 		return statesText(found.States)
 	case *pb.Answer_Grid:
@@ -28,6 +30,28 @@ func answerText(a *pb.Answer) string {
 		return characteristicsText(found.Characteristics)
 	}
 	return "  An answer that this version of the program cannot print: see it with --json.\n"
+}
+
+func cyclesText(a *pb.CyclesAnswer) string {
+	var t table
+	t.row("signal", "red", "green", "end", "back of queue", "at", "residual queue", "served", "departed", "delay veh-h")
+	for _, s := range a.GetSignals() {
+		for _, c := range s.GetCycles() {
+			residual, served := none, "part of a cycle"
+			if c.ResidualVehicles != nil {
+				residual, served = grouped(c.GetResidualVehicles(), 1), "all"
+			}
+			if c.GetResidualVehicles() > 0 {
+				served = "cycle failure"
+			}
+			t.row(s.GetSignal(), clock(c.GetStartS()), clock(c.GetGreenStartS()), clock(c.GetGreenEndS()), length(c.GetBackOfQueueM()),
+				clockOr(c.BackOfQueueTimeS, none), residual, served, grouped(c.GetDepartedVehicles(), 1), grouped(c.GetDelayVehicleH(), 2))
+		}
+	}
+	if len(t.rows) == 1 {
+		return "  The scenario has no signals.\n"
+	}
+	return t.String()
 }
 
 func statesText(a *pb.StatesAnswer) string {

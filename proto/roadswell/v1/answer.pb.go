@@ -98,6 +98,7 @@ type Answer struct {
 	//	*Answer_TravelTimes
 	//	*Answer_Characteristics
 	//	*Answer_Totals
+	//	*Answer_Cycles
 	Found         isAnswer_Found `protobuf_oneof:"found"`
 	unknownFields protoimpl.UnknownFields
 	sizeCache     protoimpl.SizeCache
@@ -219,6 +220,15 @@ func (x *Answer) GetTotals() *TotalsAnswer {
 	return nil
 }
 
+func (x *Answer) GetCycles() *CyclesAnswer {
+	if x != nil {
+		if x, ok := x.Found.(*Answer_Cycles); ok {
+			return x.Cycles
+		}
+	}
+	return nil
+}
+
 type isAnswer_Found interface {
 	isAnswer_Found()
 }
@@ -263,6 +273,11 @@ type Answer_Totals struct {
 	Totals *TotalsAnswer `protobuf:"bytes,9,opt,name=totals,proto3,oneof"`
 }
 
+type Answer_Cycles struct {
+	// Answer to a cycles question.
+	Cycles *CyclesAnswer `protobuf:"bytes,10,opt,name=cycles,proto3,oneof"`
+}
+
 func (*Answer_States) isAnswer_Found() {}
 
 func (*Answer_Grid) isAnswer_Found() {}
@@ -278,6 +293,8 @@ func (*Answer_TravelTimes) isAnswer_Found() {}
 func (*Answer_Characteristics) isAnswer_Found() {}
 
 func (*Answer_Totals) isAnswer_Found() {}
+
+func (*Answer_Cycles) isAnswer_Found() {}
 
 // State is the state of traffic on one side of a point, all lanes together.
 type State struct {
@@ -2322,11 +2339,245 @@ func (x *StretchTotals) GetStoredVehicles() float64 {
 	return 0
 }
 
+// CyclesAnswer holds the cycles of signals, in the order of the signals asked for; of every signal from upstream to
+// downstream where none was named.
+type CyclesAnswer struct {
+	state protoimpl.MessageState `protogen:"open.v1"`
+	// One for each signal.
+	Signals       []*SignalCycles `protobuf:"bytes,1,rep,name=signals,proto3" json:"signals,omitempty"`
+	unknownFields protoimpl.UnknownFields
+	sizeCache     protoimpl.SizeCache
+}
+
+func (x *CyclesAnswer) Reset() {
+	*x = CyclesAnswer{}
+	mi := &file_roadswell_v1_answer_proto_msgTypes[29]
+	ms := protoimpl.X.MessageStateOf(protoimpl.Pointer(x))
+	ms.StoreMessageInfo(mi)
+}
+
+func (x *CyclesAnswer) String() string {
+	return protoimpl.X.MessageStringOf(x)
+}
+
+func (*CyclesAnswer) ProtoMessage() {}
+
+func (x *CyclesAnswer) ProtoReflect() protoreflect.Message {
+	mi := &file_roadswell_v1_answer_proto_msgTypes[29]
+	if x != nil {
+		ms := protoimpl.X.MessageStateOf(protoimpl.Pointer(x))
+		if ms.LoadMessageInfo() == nil {
+			ms.StoreMessageInfo(mi)
+		}
+		return ms
+	}
+	return mi.MessageOf(x)
+}
+
+// Deprecated: Use CyclesAnswer.ProtoReflect.Descriptor instead.
+func (*CyclesAnswer) Descriptor() ([]byte, []int) {
+	return file_roadswell_v1_answer_proto_rawDescGZIP(), []int{29}
+}
+
+func (x *CyclesAnswer) GetSignals() []*SignalCycles {
+	if x != nil {
+		return x.Signals
+	}
+	return nil
+}
+
+// SignalCycles are the cycles of one signal, in order; together they cover the time from 0 to the horizon.
+type SignalCycles struct {
+	state protoimpl.MessageState `protogen:"open.v1"`
+	// Name of the signal.
+	Signal string `protobuf:"bytes,1,opt,name=signal,proto3" json:"signal,omitempty"`
+	// Place of its stop line, m.
+	PlaceM float64 `protobuf:"fixed64,2,opt,name=place_m,json=placeM,proto3" json:"place_m,omitempty"`
+	// Its cycles.
+	Cycles        []*Cycle `protobuf:"bytes,3,rep,name=cycles,proto3" json:"cycles,omitempty"`
+	unknownFields protoimpl.UnknownFields
+	sizeCache     protoimpl.SizeCache
+}
+
+func (x *SignalCycles) Reset() {
+	*x = SignalCycles{}
+	mi := &file_roadswell_v1_answer_proto_msgTypes[30]
+	ms := protoimpl.X.MessageStateOf(protoimpl.Pointer(x))
+	ms.StoreMessageInfo(mi)
+}
+
+func (x *SignalCycles) String() string {
+	return protoimpl.X.MessageStringOf(x)
+}
+
+func (*SignalCycles) ProtoMessage() {}
+
+func (x *SignalCycles) ProtoReflect() protoreflect.Message {
+	mi := &file_roadswell_v1_answer_proto_msgTypes[30]
+	if x != nil {
+		ms := protoimpl.X.MessageStateOf(protoimpl.Pointer(x))
+		if ms.LoadMessageInfo() == nil {
+			ms.StoreMessageInfo(mi)
+		}
+		return ms
+	}
+	return mi.MessageOf(x)
+}
+
+// Deprecated: Use SignalCycles.ProtoReflect.Descriptor instead.
+func (*SignalCycles) Descriptor() ([]byte, []int) {
+	return file_roadswell_v1_answer_proto_rawDescGZIP(), []int{30}
+}
+
+func (x *SignalCycles) GetSignal() string {
+	if x != nil {
+		return x.Signal
+	}
+	return ""
+}
+
+func (x *SignalCycles) GetPlaceM() float64 {
+	if x != nil {
+		return x.PlaceM
+	}
+	return 0
+}
+
+func (x *SignalCycles) GetCycles() []*Cycle {
+	if x != nil {
+		return x.Cycles
+	}
+	return nil
+}
+
+// Cycle is what happens at a signal from the beginning of one red to the beginning of the next. A plan with several
+// greens in its cycle has as many of these. The forecast is advisory: it is not an instruction to a signal controller.
+type Cycle struct {
+	state protoimpl.MessageState `protogen:"open.v1"`
+	// When red begins, s; 0 where it began before.
+	StartS float64 `protobuf:"fixed64,1,opt,name=start_s,json=startS,proto3" json:"start_s,omitempty"`
+	// When effective green begins, s; 0 where it began before, the horizon where it has not begun by then.
+	GreenStartS float64 `protobuf:"fixed64,2,opt,name=green_start_s,json=greenStartS,proto3" json:"green_start_s,omitempty"`
+	// When effective green ends, s; the horizon where it has not ended by then.
+	GreenEndS float64 `protobuf:"fixed64,3,opt,name=green_end_s,json=greenEndS,proto3" json:"green_end_s,omitempty"`
+	// Whether the whole cycle lies between 0 and the horizon. Where it does not, the numbers below are about the part of
+	// it that does.
+	Complete bool `protobuf:"varint,4,opt,name=complete,proto3" json:"complete,omitempty"`
+	// Back of queue: greatest distance from the stop line back to the tail of the signal's queue during the cycle, m; 0
+	// without a queue. This is exact but for the case that Queue.peak_length_m names.
+	BackOfQueueM float64 `protobuf:"fixed64,5,opt,name=back_of_queue_m,json=backOfQueueM,proto3" json:"back_of_queue_m,omitempty"`
+	// First time in the cycle at which the tail is that far back, s. Absent: no queue in this cycle.
+	BackOfQueueTimeS *float64 `protobuf:"fixed64,6,opt,name=back_of_queue_time_s,json=backOfQueueTimeS,proto3,oneof" json:"back_of_queue_time_s,omitempty"`
+	// Residual queue: vehicles in the signal's queue when green ends, 0 or more. More than 0 is a cycle failure. Absent:
+	// green does not end by the horizon.
+	ResidualVehicles *float64 `protobuf:"fixed64,7,opt,name=residual_vehicles,json=residualVehicles,proto3,oneof" json:"residual_vehicles,omitempty"`
+	// Vehicles that crossed the stop line during the cycle.
+	DepartedVehicles float64 `protobuf:"fixed64,8,opt,name=departed_vehicles,json=departedVehicles,proto3" json:"departed_vehicles,omitempty"`
+	// Time lost by all vehicles on the approach during the cycle, beyond what the distance that they drive there takes in
+	// free flow, vehicle-hours. The approach reaches from the stop line back to the next node upstream that is no join.
+	DelayVehicleH float64 `protobuf:"fixed64,9,opt,name=delay_vehicle_h,json=delayVehicleH,proto3" json:"delay_vehicle_h,omitempty"`
+	unknownFields protoimpl.UnknownFields
+	sizeCache     protoimpl.SizeCache
+}
+
+func (x *Cycle) Reset() {
+	*x = Cycle{}
+	mi := &file_roadswell_v1_answer_proto_msgTypes[31]
+	ms := protoimpl.X.MessageStateOf(protoimpl.Pointer(x))
+	ms.StoreMessageInfo(mi)
+}
+
+func (x *Cycle) String() string {
+	return protoimpl.X.MessageStringOf(x)
+}
+
+func (*Cycle) ProtoMessage() {}
+
+func (x *Cycle) ProtoReflect() protoreflect.Message {
+	mi := &file_roadswell_v1_answer_proto_msgTypes[31]
+	if x != nil {
+		ms := protoimpl.X.MessageStateOf(protoimpl.Pointer(x))
+		if ms.LoadMessageInfo() == nil {
+			ms.StoreMessageInfo(mi)
+		}
+		return ms
+	}
+	return mi.MessageOf(x)
+}
+
+// Deprecated: Use Cycle.ProtoReflect.Descriptor instead.
+func (*Cycle) Descriptor() ([]byte, []int) {
+	return file_roadswell_v1_answer_proto_rawDescGZIP(), []int{31}
+}
+
+func (x *Cycle) GetStartS() float64 {
+	if x != nil {
+		return x.StartS
+	}
+	return 0
+}
+
+func (x *Cycle) GetGreenStartS() float64 {
+	if x != nil {
+		return x.GreenStartS
+	}
+	return 0
+}
+
+func (x *Cycle) GetGreenEndS() float64 {
+	if x != nil {
+		return x.GreenEndS
+	}
+	return 0
+}
+
+func (x *Cycle) GetComplete() bool {
+	if x != nil {
+		return x.Complete
+	}
+	return false
+}
+
+func (x *Cycle) GetBackOfQueueM() float64 {
+	if x != nil {
+		return x.BackOfQueueM
+	}
+	return 0
+}
+
+func (x *Cycle) GetBackOfQueueTimeS() float64 {
+	if x != nil && x.BackOfQueueTimeS != nil {
+		return *x.BackOfQueueTimeS
+	}
+	return 0
+}
+
+func (x *Cycle) GetResidualVehicles() float64 {
+	if x != nil && x.ResidualVehicles != nil {
+		return *x.ResidualVehicles
+	}
+	return 0
+}
+
+func (x *Cycle) GetDepartedVehicles() float64 {
+	if x != nil {
+		return x.DepartedVehicles
+	}
+	return 0
+}
+
+func (x *Cycle) GetDelayVehicleH() float64 {
+	if x != nil {
+		return x.DelayVehicleH
+	}
+	return 0
+}
+
 var File_roadswell_v1_answer_proto protoreflect.FileDescriptor
 
 const file_roadswell_v1_answer_proto_rawDesc = "" +
 	"\n" +
-	"\x19roadswell/v1/answer.proto\x12\froadswell.v1\x1a\x1broadswell/v1/question.proto\"\x8e\x04\n" +
+	"\x19roadswell/v1/answer.proto\x12\froadswell.v1\x1a\x1broadswell/v1/question.proto\"\xc4\x04\n" +
 	"\x06Answer\x12\x14\n" +
 	"\x05label\x18\x01 \x01(\tR\x05label\x124\n" +
 	"\x06states\x18\x02 \x01(\v2\x1a.roadswell.v1.StatesAnswerH\x00R\x06states\x12.\n" +
@@ -2336,7 +2587,9 @@ const file_roadswell_v1_answer_proto_rawDesc = "" +
 	"\ftrajectories\x18\x06 \x01(\v2 .roadswell.v1.TrajectoriesAnswerH\x00R\ftrajectories\x12D\n" +
 	"\ftravel_times\x18\a \x01(\v2\x1f.roadswell.v1.TravelTimesAnswerH\x00R\vtravelTimes\x12O\n" +
 	"\x0fcharacteristics\x18\b \x01(\v2#.roadswell.v1.CharacteristicsAnswerH\x00R\x0fcharacteristics\x124\n" +
-	"\x06totals\x18\t \x01(\v2\x1a.roadswell.v1.TotalsAnswerH\x00R\x06totalsB\a\n" +
+	"\x06totals\x18\t \x01(\v2\x1a.roadswell.v1.TotalsAnswerH\x00R\x06totals\x124\n" +
+	"\x06cycles\x18\n" +
+	" \x01(\v2\x1a.roadswell.v1.CyclesAnswerH\x00R\x06cyclesB\a\n" +
 	"\x05found\"\x9c\x01\n" +
 	"\x05State\x12+\n" +
 	"\x12density_veh_per_km\x18\x01 \x01(\x01R\x0fdensityVehPerKm\x12#\n" +
@@ -2509,7 +2762,25 @@ const file_roadswell_v1_answer_proto_rawDesc = "" +
 	"\x10initial_vehicles\x18\x05 \x01(\x01R\x0finitialVehicles\x12)\n" +
 	"\x10entered_vehicles\x18\x06 \x01(\x01R\x0fenteredVehicles\x12#\n" +
 	"\rleft_vehicles\x18\a \x01(\x01R\fleftVehicles\x12'\n" +
-	"\x0fstored_vehicles\x18\b \x01(\x01R\x0estoredVehicles*l\n" +
+	"\x0fstored_vehicles\x18\b \x01(\x01R\x0estoredVehicles\"D\n" +
+	"\fCyclesAnswer\x124\n" +
+	"\asignals\x18\x01 \x03(\v2\x1a.roadswell.v1.SignalCyclesR\asignals\"l\n" +
+	"\fSignalCycles\x12\x16\n" +
+	"\x06signal\x18\x01 \x01(\tR\x06signal\x12\x17\n" +
+	"\aplace_m\x18\x02 \x01(\x01R\x06placeM\x12+\n" +
+	"\x06cycles\x18\x03 \x03(\v2\x13.roadswell.v1.CycleR\x06cycles\"\x92\x03\n" +
+	"\x05Cycle\x12\x17\n" +
+	"\astart_s\x18\x01 \x01(\x01R\x06startS\x12\"\n" +
+	"\rgreen_start_s\x18\x02 \x01(\x01R\vgreenStartS\x12\x1e\n" +
+	"\vgreen_end_s\x18\x03 \x01(\x01R\tgreenEndS\x12\x1a\n" +
+	"\bcomplete\x18\x04 \x01(\bR\bcomplete\x12%\n" +
+	"\x0fback_of_queue_m\x18\x05 \x01(\x01R\fbackOfQueueM\x123\n" +
+	"\x14back_of_queue_time_s\x18\x06 \x01(\x01H\x00R\x10backOfQueueTimeS\x88\x01\x01\x120\n" +
+	"\x11residual_vehicles\x18\a \x01(\x01H\x01R\x10residualVehicles\x88\x01\x01\x12+\n" +
+	"\x11departed_vehicles\x18\b \x01(\x01R\x10departedVehicles\x12&\n" +
+	"\x0fdelay_vehicle_h\x18\t \x01(\x01R\rdelayVehicleHB\x17\n" +
+	"\x15_back_of_queue_time_sB\x14\n" +
+	"\x12_residual_vehicles*l\n" +
 	"\bFrontEnd\x12\x19\n" +
 	"\x15FRONT_END_UNSPECIFIED\x10\x00\x12\x18\n" +
 	"\x14FRONT_END_AT_HORIZON\x10\x01\x12\x14\n" +
@@ -2530,7 +2801,7 @@ func file_roadswell_v1_answer_proto_rawDescGZIP() []byte {
 }
 
 var file_roadswell_v1_answer_proto_enumTypes = make([]protoimpl.EnumInfo, 1)
-var file_roadswell_v1_answer_proto_msgTypes = make([]protoimpl.MessageInfo, 29)
+var file_roadswell_v1_answer_proto_msgTypes = make([]protoimpl.MessageInfo, 32)
 var file_roadswell_v1_answer_proto_goTypes = []any{
 	(FrontEnd)(0),                 // 0: roadswell.v1.FrontEnd
 	(*Answer)(nil),                // 1: roadswell.v1.Answer
@@ -2562,8 +2833,11 @@ var file_roadswell_v1_answer_proto_goTypes = []any{
 	(*TotalsAnswer)(nil),          // 27: roadswell.v1.TotalsAnswer
 	(*Totals)(nil),                // 28: roadswell.v1.Totals
 	(*StretchTotals)(nil),         // 29: roadswell.v1.StretchTotals
-	(*PlaceTime)(nil),             // 30: roadswell.v1.PlaceTime
-	(FrontKind)(0),                // 31: roadswell.v1.FrontKind
+	(*CyclesAnswer)(nil),          // 30: roadswell.v1.CyclesAnswer
+	(*SignalCycles)(nil),          // 31: roadswell.v1.SignalCycles
+	(*Cycle)(nil),                 // 32: roadswell.v1.Cycle
+	(*PlaceTime)(nil),             // 33: roadswell.v1.PlaceTime
+	(FrontKind)(0),                // 34: roadswell.v1.FrontKind
 }
 var file_roadswell_v1_answer_proto_depIdxs = []int32{
 	3,  // 0: roadswell.v1.Answer.states:type_name -> roadswell.v1.StatesAnswer
@@ -2574,51 +2848,54 @@ var file_roadswell_v1_answer_proto_depIdxs = []int32{
 	23, // 5: roadswell.v1.Answer.travel_times:type_name -> roadswell.v1.TravelTimesAnswer
 	25, // 6: roadswell.v1.Answer.characteristics:type_name -> roadswell.v1.CharacteristicsAnswer
 	27, // 7: roadswell.v1.Answer.totals:type_name -> roadswell.v1.TotalsAnswer
-	4,  // 8: roadswell.v1.StatesAnswer.points:type_name -> roadswell.v1.PointState
-	30, // 9: roadswell.v1.PointState.at:type_name -> roadswell.v1.PlaceTime
-	2,  // 10: roadswell.v1.PointState.upstream:type_name -> roadswell.v1.State
-	2,  // 11: roadswell.v1.PointState.downstream:type_name -> roadswell.v1.State
-	6,  // 12: roadswell.v1.GridAnswer.two_sided:type_name -> roadswell.v1.TwoSidedPoint
-	2,  // 13: roadswell.v1.TwoSidedPoint.downstream:type_name -> roadswell.v1.State
-	9,  // 14: roadswell.v1.FrontsAnswer.fronts:type_name -> roadswell.v1.Front
-	31, // 15: roadswell.v1.Front.kind:type_name -> roadswell.v1.FrontKind
-	30, // 16: roadswell.v1.Front.birth:type_name -> roadswell.v1.PlaceTime
-	30, // 17: roadswell.v1.Front.end:type_name -> roadswell.v1.PlaceTime
-	0,  // 18: roadswell.v1.Front.ends_by:type_name -> roadswell.v1.FrontEnd
-	7,  // 19: roadswell.v1.Front.path:type_name -> roadswell.v1.Path
-	12, // 20: roadswell.v1.Front.at_birth:type_name -> roadswell.v1.FrontSides
-	12, // 21: roadswell.v1.Front.at_end:type_name -> roadswell.v1.FrontSides
-	10, // 22: roadswell.v1.Front.law:type_name -> roadswell.v1.FrontLaw
-	11, // 23: roadswell.v1.FrontLaw.upstream:type_name -> roadswell.v1.ProfileLaw
-	11, // 24: roadswell.v1.FrontLaw.downstream:type_name -> roadswell.v1.ProfileLaw
-	2,  // 25: roadswell.v1.FrontSides.upstream:type_name -> roadswell.v1.State
-	2,  // 26: roadswell.v1.FrontSides.downstream:type_name -> roadswell.v1.State
-	14, // 27: roadswell.v1.QueuesAnswer.nodes:type_name -> roadswell.v1.NodeQueues
-	15, // 28: roadswell.v1.NodeQueues.queues:type_name -> roadswell.v1.Queue
-	17, // 29: roadswell.v1.NodeQueues.extents:type_name -> roadswell.v1.QueueExtent
-	19, // 30: roadswell.v1.NodeQueues.reaches:type_name -> roadswell.v1.QueueReach
-	7,  // 31: roadswell.v1.Queue.tail:type_name -> roadswell.v1.Path
-	16, // 32: roadswell.v1.Queue.strips:type_name -> roadswell.v1.StripPath
-	7,  // 33: roadswell.v1.StripPath.tail:type_name -> roadswell.v1.Path
-	7,  // 34: roadswell.v1.StripPath.head:type_name -> roadswell.v1.Path
-	18, // 35: roadswell.v1.QueueExtent.strips:type_name -> roadswell.v1.QueueStrip
-	21, // 36: roadswell.v1.TrajectoriesAnswer.trajectories:type_name -> roadswell.v1.Trajectory
-	30, // 37: roadswell.v1.Trajectory.start:type_name -> roadswell.v1.PlaceTime
-	30, // 38: roadswell.v1.Trajectory.end:type_name -> roadswell.v1.PlaceTime
-	7,  // 39: roadswell.v1.Trajectory.path:type_name -> roadswell.v1.Path
-	22, // 40: roadswell.v1.Trajectory.passings:type_name -> roadswell.v1.Passing
-	24, // 41: roadswell.v1.TravelTimesAnswer.trips:type_name -> roadswell.v1.Trip
-	26, // 42: roadswell.v1.CharacteristicsAnswer.characteristics:type_name -> roadswell.v1.Characteristic
-	7,  // 43: roadswell.v1.Characteristic.path:type_name -> roadswell.v1.Path
-	0,  // 44: roadswell.v1.Characteristic.ends_by:type_name -> roadswell.v1.FrontEnd
-	28, // 45: roadswell.v1.TotalsAnswer.totals:type_name -> roadswell.v1.Totals
-	29, // 46: roadswell.v1.Totals.corridor:type_name -> roadswell.v1.StretchTotals
-	29, // 47: roadswell.v1.Totals.segments:type_name -> roadswell.v1.StretchTotals
-	48, // [48:48] is the sub-list for method output_type
-	48, // [48:48] is the sub-list for method input_type
-	48, // [48:48] is the sub-list for extension type_name
-	48, // [48:48] is the sub-list for extension extendee
-	0,  // [0:48] is the sub-list for field type_name
+	30, // 8: roadswell.v1.Answer.cycles:type_name -> roadswell.v1.CyclesAnswer
+	4,  // 9: roadswell.v1.StatesAnswer.points:type_name -> roadswell.v1.PointState
+	33, // 10: roadswell.v1.PointState.at:type_name -> roadswell.v1.PlaceTime
+	2,  // 11: roadswell.v1.PointState.upstream:type_name -> roadswell.v1.State
+	2,  // 12: roadswell.v1.PointState.downstream:type_name -> roadswell.v1.State
+	6,  // 13: roadswell.v1.GridAnswer.two_sided:type_name -> roadswell.v1.TwoSidedPoint
+	2,  // 14: roadswell.v1.TwoSidedPoint.downstream:type_name -> roadswell.v1.State
+	9,  // 15: roadswell.v1.FrontsAnswer.fronts:type_name -> roadswell.v1.Front
+	34, // 16: roadswell.v1.Front.kind:type_name -> roadswell.v1.FrontKind
+	33, // 17: roadswell.v1.Front.birth:type_name -> roadswell.v1.PlaceTime
+	33, // 18: roadswell.v1.Front.end:type_name -> roadswell.v1.PlaceTime
+	0,  // 19: roadswell.v1.Front.ends_by:type_name -> roadswell.v1.FrontEnd
+	7,  // 20: roadswell.v1.Front.path:type_name -> roadswell.v1.Path
+	12, // 21: roadswell.v1.Front.at_birth:type_name -> roadswell.v1.FrontSides
+	12, // 22: roadswell.v1.Front.at_end:type_name -> roadswell.v1.FrontSides
+	10, // 23: roadswell.v1.Front.law:type_name -> roadswell.v1.FrontLaw
+	11, // 24: roadswell.v1.FrontLaw.upstream:type_name -> roadswell.v1.ProfileLaw
+	11, // 25: roadswell.v1.FrontLaw.downstream:type_name -> roadswell.v1.ProfileLaw
+	2,  // 26: roadswell.v1.FrontSides.upstream:type_name -> roadswell.v1.State
+	2,  // 27: roadswell.v1.FrontSides.downstream:type_name -> roadswell.v1.State
+	14, // 28: roadswell.v1.QueuesAnswer.nodes:type_name -> roadswell.v1.NodeQueues
+	15, // 29: roadswell.v1.NodeQueues.queues:type_name -> roadswell.v1.Queue
+	17, // 30: roadswell.v1.NodeQueues.extents:type_name -> roadswell.v1.QueueExtent
+	19, // 31: roadswell.v1.NodeQueues.reaches:type_name -> roadswell.v1.QueueReach
+	7,  // 32: roadswell.v1.Queue.tail:type_name -> roadswell.v1.Path
+	16, // 33: roadswell.v1.Queue.strips:type_name -> roadswell.v1.StripPath
+	7,  // 34: roadswell.v1.StripPath.tail:type_name -> roadswell.v1.Path
+	7,  // 35: roadswell.v1.StripPath.head:type_name -> roadswell.v1.Path
+	18, // 36: roadswell.v1.QueueExtent.strips:type_name -> roadswell.v1.QueueStrip
+	21, // 37: roadswell.v1.TrajectoriesAnswer.trajectories:type_name -> roadswell.v1.Trajectory
+	33, // 38: roadswell.v1.Trajectory.start:type_name -> roadswell.v1.PlaceTime
+	33, // 39: roadswell.v1.Trajectory.end:type_name -> roadswell.v1.PlaceTime
+	7,  // 40: roadswell.v1.Trajectory.path:type_name -> roadswell.v1.Path
+	22, // 41: roadswell.v1.Trajectory.passings:type_name -> roadswell.v1.Passing
+	24, // 42: roadswell.v1.TravelTimesAnswer.trips:type_name -> roadswell.v1.Trip
+	26, // 43: roadswell.v1.CharacteristicsAnswer.characteristics:type_name -> roadswell.v1.Characteristic
+	7,  // 44: roadswell.v1.Characteristic.path:type_name -> roadswell.v1.Path
+	0,  // 45: roadswell.v1.Characteristic.ends_by:type_name -> roadswell.v1.FrontEnd
+	28, // 46: roadswell.v1.TotalsAnswer.totals:type_name -> roadswell.v1.Totals
+	29, // 47: roadswell.v1.Totals.corridor:type_name -> roadswell.v1.StretchTotals
+	29, // 48: roadswell.v1.Totals.segments:type_name -> roadswell.v1.StretchTotals
+	31, // 49: roadswell.v1.CyclesAnswer.signals:type_name -> roadswell.v1.SignalCycles
+	32, // 50: roadswell.v1.SignalCycles.cycles:type_name -> roadswell.v1.Cycle
+	51, // [51:51] is the sub-list for method output_type
+	51, // [51:51] is the sub-list for method input_type
+	51, // [51:51] is the sub-list for extension type_name
+	51, // [51:51] is the sub-list for extension extendee
+	0,  // [0:51] is the sub-list for field type_name
 }
 
 func init() { file_roadswell_v1_answer_proto_init() }
@@ -2636,6 +2913,7 @@ func file_roadswell_v1_answer_proto_init() {
 		(*Answer_TravelTimes)(nil),
 		(*Answer_Characteristics)(nil),
 		(*Answer_Totals)(nil),
+		(*Answer_Cycles)(nil),
 	}
 	file_roadswell_v1_answer_proto_msgTypes[8].OneofWrappers = []any{}
 	file_roadswell_v1_answer_proto_msgTypes[10].OneofWrappers = []any{}
@@ -2644,13 +2922,14 @@ func file_roadswell_v1_answer_proto_init() {
 	file_roadswell_v1_answer_proto_msgTypes[18].OneofWrappers = []any{}
 	file_roadswell_v1_answer_proto_msgTypes[21].OneofWrappers = []any{}
 	file_roadswell_v1_answer_proto_msgTypes[23].OneofWrappers = []any{}
+	file_roadswell_v1_answer_proto_msgTypes[31].OneofWrappers = []any{}
 	type x struct{}
 	out := protoimpl.TypeBuilder{
 		File: protoimpl.DescBuilder{
 			GoPackagePath: reflect.TypeOf(x{}).PkgPath(),
 			RawDescriptor: unsafe.Slice(unsafe.StringData(file_roadswell_v1_answer_proto_rawDesc), len(file_roadswell_v1_answer_proto_rawDesc)),
 			NumEnums:      1,
-			NumMessages:   29,
+			NumMessages:   32,
 			NumExtensions: 0,
 			NumServices:   0,
 		},

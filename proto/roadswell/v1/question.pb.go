@@ -161,6 +161,7 @@ type Question struct {
 	//	*Question_TravelTimes
 	//	*Question_Characteristics
 	//	*Question_Totals
+	//	*Question_Cycles
 	Ask           isQuestion_Ask `protobuf_oneof:"ask"`
 	unknownFields protoimpl.UnknownFields
 	sizeCache     protoimpl.SizeCache
@@ -282,6 +283,15 @@ func (x *Question) GetTotals() *TotalsQuestion {
 	return nil
 }
 
+func (x *Question) GetCycles() *CyclesQuestion {
+	if x != nil {
+		if x, ok := x.Ask.(*Question_Cycles); ok {
+			return x.Cycles
+		}
+	}
+	return nil
+}
+
 type isQuestion_Ask interface {
 	isQuestion_Ask()
 }
@@ -326,6 +336,11 @@ type Question_Totals struct {
 	Totals *TotalsQuestion `protobuf:"bytes,9,opt,name=totals,proto3,oneof"`
 }
 
+type Question_Cycles struct {
+	// What each cycle of a signal does to its queue: back of queue, residual queue, cycle failure, delay.
+	Cycles *CyclesQuestion `protobuf:"bytes,10,opt,name=cycles,proto3,oneof"`
+}
+
 func (*Question_States) isQuestion_Ask() {}
 
 func (*Question_Grid) isQuestion_Ask() {}
@@ -341,6 +356,8 @@ func (*Question_TravelTimes) isQuestion_Ask() {}
 func (*Question_Characteristics) isQuestion_Ask() {}
 
 func (*Question_Totals) isQuestion_Ask() {}
+
+func (*Question_Cycles) isQuestion_Ask() {}
 
 // PlaceTime is a point of the time-space plane.
 type PlaceTime struct {
@@ -873,11 +890,57 @@ func (x *TotalsQuestion) GetTimesS() []float64 {
 	return nil
 }
 
+// CyclesQuestion asks for the cycles of signals within the horizon.
+type CyclesQuestion struct {
+	state protoimpl.MessageState `protogen:"open.v1"`
+	// Names of the signals. Empty: every signal, from upstream to downstream.
+	Signals       []string `protobuf:"bytes,1,rep,name=signals,proto3" json:"signals,omitempty"`
+	unknownFields protoimpl.UnknownFields
+	sizeCache     protoimpl.SizeCache
+}
+
+func (x *CyclesQuestion) Reset() {
+	*x = CyclesQuestion{}
+	mi := &file_roadswell_v1_question_proto_msgTypes[10]
+	ms := protoimpl.X.MessageStateOf(protoimpl.Pointer(x))
+	ms.StoreMessageInfo(mi)
+}
+
+func (x *CyclesQuestion) String() string {
+	return protoimpl.X.MessageStringOf(x)
+}
+
+func (*CyclesQuestion) ProtoMessage() {}
+
+func (x *CyclesQuestion) ProtoReflect() protoreflect.Message {
+	mi := &file_roadswell_v1_question_proto_msgTypes[10]
+	if x != nil {
+		ms := protoimpl.X.MessageStateOf(protoimpl.Pointer(x))
+		if ms.LoadMessageInfo() == nil {
+			ms.StoreMessageInfo(mi)
+		}
+		return ms
+	}
+	return mi.MessageOf(x)
+}
+
+// Deprecated: Use CyclesQuestion.ProtoReflect.Descriptor instead.
+func (*CyclesQuestion) Descriptor() ([]byte, []int) {
+	return file_roadswell_v1_question_proto_rawDescGZIP(), []int{10}
+}
+
+func (x *CyclesQuestion) GetSignals() []string {
+	if x != nil {
+		return x.Signals
+	}
+	return nil
+}
+
 var File_roadswell_v1_question_proto protoreflect.FileDescriptor
 
 const file_roadswell_v1_question_proto_rawDesc = "" +
 	"\n" +
-	"\x1broadswell/v1/question.proto\x12\froadswell.v1\"\x9e\x04\n" +
+	"\x1broadswell/v1/question.proto\x12\froadswell.v1\"\xd6\x04\n" +
 	"\bQuestion\x12\x14\n" +
 	"\x05label\x18\x01 \x01(\tR\x05label\x126\n" +
 	"\x06states\x18\x02 \x01(\v2\x1c.roadswell.v1.StatesQuestionH\x00R\x06states\x120\n" +
@@ -887,7 +950,9 @@ const file_roadswell_v1_question_proto_rawDesc = "" +
 	"\ftrajectories\x18\x06 \x01(\v2\".roadswell.v1.TrajectoriesQuestionH\x00R\ftrajectories\x12F\n" +
 	"\ftravel_times\x18\a \x01(\v2!.roadswell.v1.TravelTimesQuestionH\x00R\vtravelTimes\x12Q\n" +
 	"\x0fcharacteristics\x18\b \x01(\v2%.roadswell.v1.CharacteristicsQuestionH\x00R\x0fcharacteristics\x126\n" +
-	"\x06totals\x18\t \x01(\v2\x1c.roadswell.v1.TotalsQuestionH\x00R\x06totalsB\x05\n" +
+	"\x06totals\x18\t \x01(\v2\x1c.roadswell.v1.TotalsQuestionH\x00R\x06totals\x126\n" +
+	"\x06cycles\x18\n" +
+	" \x01(\v2\x1c.roadswell.v1.CyclesQuestionH\x00R\x06cyclesB\x05\n" +
 	"\x03ask\";\n" +
 	"\tPlaceTime\x12\x17\n" +
 	"\aplace_m\x18\x01 \x01(\x01R\x06placeM\x12\x15\n" +
@@ -926,7 +991,9 @@ const file_roadswell_v1_question_proto_rawDesc = "" +
 	"\x17CharacteristicsQuestion\x12/\n" +
 	"\x06starts\x18\x01 \x03(\v2\x17.roadswell.v1.PlaceTimeR\x06starts\")\n" +
 	"\x0eTotalsQuestion\x12\x17\n" +
-	"\atimes_s\x18\x01 \x03(\x01R\x06timesS*\x92\x01\n" +
+	"\atimes_s\x18\x01 \x03(\x01R\x06timesS\"*\n" +
+	"\x0eCyclesQuestion\x12\x18\n" +
+	"\asignals\x18\x01 \x03(\tR\asignals*\x92\x01\n" +
 	"\fGridQuantity\x12\x1d\n" +
 	"\x19GRID_QUANTITY_UNSPECIFIED\x10\x00\x12\x19\n" +
 	"\x15GRID_QUANTITY_DENSITY\x10\x01\x12\x16\n" +
@@ -953,7 +1020,7 @@ func file_roadswell_v1_question_proto_rawDescGZIP() []byte {
 }
 
 var file_roadswell_v1_question_proto_enumTypes = make([]protoimpl.EnumInfo, 2)
-var file_roadswell_v1_question_proto_msgTypes = make([]protoimpl.MessageInfo, 10)
+var file_roadswell_v1_question_proto_msgTypes = make([]protoimpl.MessageInfo, 11)
 var file_roadswell_v1_question_proto_goTypes = []any{
 	(GridQuantity)(0),               // 0: roadswell.v1.GridQuantity
 	(FrontKind)(0),                  // 1: roadswell.v1.FrontKind
@@ -967,6 +1034,7 @@ var file_roadswell_v1_question_proto_goTypes = []any{
 	(*TravelTimesQuestion)(nil),     // 9: roadswell.v1.TravelTimesQuestion
 	(*CharacteristicsQuestion)(nil), // 10: roadswell.v1.CharacteristicsQuestion
 	(*TotalsQuestion)(nil),          // 11: roadswell.v1.TotalsQuestion
+	(*CyclesQuestion)(nil),          // 12: roadswell.v1.CyclesQuestion
 }
 var file_roadswell_v1_question_proto_depIdxs = []int32{
 	4,  // 0: roadswell.v1.Question.states:type_name -> roadswell.v1.StatesQuestion
@@ -977,16 +1045,17 @@ var file_roadswell_v1_question_proto_depIdxs = []int32{
 	9,  // 5: roadswell.v1.Question.travel_times:type_name -> roadswell.v1.TravelTimesQuestion
 	10, // 6: roadswell.v1.Question.characteristics:type_name -> roadswell.v1.CharacteristicsQuestion
 	11, // 7: roadswell.v1.Question.totals:type_name -> roadswell.v1.TotalsQuestion
-	3,  // 8: roadswell.v1.StatesQuestion.points:type_name -> roadswell.v1.PlaceTime
-	0,  // 9: roadswell.v1.GridQuestion.quantities:type_name -> roadswell.v1.GridQuantity
-	1,  // 10: roadswell.v1.FrontsQuestion.kinds:type_name -> roadswell.v1.FrontKind
-	3,  // 11: roadswell.v1.TrajectoriesQuestion.starts:type_name -> roadswell.v1.PlaceTime
-	3,  // 12: roadswell.v1.CharacteristicsQuestion.starts:type_name -> roadswell.v1.PlaceTime
-	13, // [13:13] is the sub-list for method output_type
-	13, // [13:13] is the sub-list for method input_type
-	13, // [13:13] is the sub-list for extension type_name
-	13, // [13:13] is the sub-list for extension extendee
-	0,  // [0:13] is the sub-list for field type_name
+	12, // 8: roadswell.v1.Question.cycles:type_name -> roadswell.v1.CyclesQuestion
+	3,  // 9: roadswell.v1.StatesQuestion.points:type_name -> roadswell.v1.PlaceTime
+	0,  // 10: roadswell.v1.GridQuestion.quantities:type_name -> roadswell.v1.GridQuantity
+	1,  // 11: roadswell.v1.FrontsQuestion.kinds:type_name -> roadswell.v1.FrontKind
+	3,  // 12: roadswell.v1.TrajectoriesQuestion.starts:type_name -> roadswell.v1.PlaceTime
+	3,  // 13: roadswell.v1.CharacteristicsQuestion.starts:type_name -> roadswell.v1.PlaceTime
+	14, // [14:14] is the sub-list for method output_type
+	14, // [14:14] is the sub-list for method input_type
+	14, // [14:14] is the sub-list for extension type_name
+	14, // [14:14] is the sub-list for extension extendee
+	0,  // [0:14] is the sub-list for field type_name
 }
 
 func init() { file_roadswell_v1_question_proto_init() }
@@ -1003,6 +1072,7 @@ func file_roadswell_v1_question_proto_init() {
 		(*Question_TravelTimes)(nil),
 		(*Question_Characteristics)(nil),
 		(*Question_Totals)(nil),
+		(*Question_Cycles)(nil),
 	}
 	file_roadswell_v1_question_proto_msgTypes[4].OneofWrappers = []any{}
 	file_roadswell_v1_question_proto_msgTypes[5].OneofWrappers = []any{}
@@ -1014,7 +1084,7 @@ func file_roadswell_v1_question_proto_init() {
 			GoPackagePath: reflect.TypeOf(x{}).PkgPath(),
 			RawDescriptor: unsafe.Slice(unsafe.StringData(file_roadswell_v1_question_proto_rawDesc), len(file_roadswell_v1_question_proto_rawDesc)),
 			NumEnums:      2,
-			NumMessages:   10,
+			NumMessages:   11,
 			NumExtensions: 0,
 			NumServices:   0,
 		},
