@@ -40,6 +40,11 @@ func (a *answerer) travelTimes(q *pb.TravelTimesQuestion) (*pb.Answer_TravelTime
 			return nil, a.failed(err)
 		}
 		found := trip(tt, departure)
+		instantaneous, moves, err := a.solution.InstantaneousTravelTime(out.FromM, out.ToM, departure)
+		if err != nil {
+			return nil, a.failed(err)
+		}
+		found.InstantaneousTimeS = present(instantaneous, moves)
 		if err := a.spend(found); err != nil {
 			return nil, err
 		}

@@ -104,6 +104,10 @@ func TestTravelTimesThroughAClosure(t *testing.T) {
 	near(t, "delay", delayed.GetDelayS(), 150)
 	near(t, "free-flow time", delayed.GetFreeFlowTimeS(), 250)
 	near(t, "waiting outside", delayed.GetWaitingOutsideS(), 0)
+	near(t, "instantaneous time in free flow", free.GetInstantaneousTimeS(), 250)
+	if delayed.InstantaneousTimeS != nil {
+		t.Errorf("an instantaneous time of %g s through standing traffic", delayed.GetInstantaneousTimeS())
+	}
 	if late.GetArrived() || late.ArrivalS != nil || late.TravelTimeS != nil || late.DelayS != nil {
 		t.Errorf("a trip that has not arrived by the horizon says %v", late)
 	}

@@ -117,10 +117,10 @@ func reachesText(q *pb.QueuesAnswer) string {
 
 func travelTimesText(a *pb.TravelTimesAnswer) string {
 	var t table
-	t.row("departure", "arrival", "travel time", "free flow", "delay", "waiting outside")
+	t.row("departure", "arrival", "travel time", "instantaneous", "free flow", "delay", "waiting outside")
 	for _, trip := range a.GetTrips() {
 		t.row(clock(trip.GetDepartureS()), clockOr(trip.ArrivalS, "not by the horizon"), spanOr(trip.TravelTimeS, none),
-			span(trip.GetFreeFlowTimeS()), spanOr(trip.DelayS, none), spanOr(trip.WaitingOutsideS, none))
+			spanOr(trip.InstantaneousTimeS, "standing"), span(trip.GetFreeFlowTimeS()), spanOr(trip.DelayS, none), spanOr(trip.WaitingOutsideS, none))
 	}
 	return fmt.Sprintf("Travel times from %s to %s\n%s", place(a.GetFromM()), place(a.GetToM()), t.String())
 }

@@ -1908,9 +1908,12 @@ type Trip struct {
 	// What the trip takes on an empty road, s.
 	FreeFlowTimeS float64 `protobuf:"fixed64,6,opt,name=free_flow_time_s,json=freeFlowTimeS,proto3" json:"free_flow_time_s,omitempty"`
 	// Travel time less free-flow time, s; waiting outside is not in it. Absent: not arrived by the horizon.
-	DelayS        *float64 `protobuf:"fixed64,7,opt,name=delay_s,json=delayS,proto3,oneof" json:"delay_s,omitempty"`
-	unknownFields protoimpl.UnknownFields
-	sizeCache     protoimpl.SizeCache
+	DelayS *float64 `protobuf:"fixed64,7,opt,name=delay_s,json=delayS,proto3,oneof" json:"delay_s,omitempty"`
+	// What the trip would take if the speeds along the road at the departure stayed as they are, s: what detectors along a
+	// road add up to, and no forecast of this trip. Absent: traffic stands still somewhere on the way at the departure.
+	InstantaneousTimeS *float64 `protobuf:"fixed64,8,opt,name=instantaneous_time_s,json=instantaneousTimeS,proto3,oneof" json:"instantaneous_time_s,omitempty"`
+	unknownFields      protoimpl.UnknownFields
+	sizeCache          protoimpl.SizeCache
 }
 
 func (x *Trip) Reset() {
@@ -1988,6 +1991,13 @@ func (x *Trip) GetFreeFlowTimeS() float64 {
 func (x *Trip) GetDelayS() float64 {
 	if x != nil && x.DelayS != nil {
 		return *x.DelayS
+	}
+	return 0
+}
+
+func (x *Trip) GetInstantaneousTimeS() float64 {
+	if x != nil && x.InstantaneousTimeS != nil {
+		return *x.InstantaneousTimeS
 	}
 	return 0
 }
@@ -2724,7 +2734,7 @@ const file_roadswell_v1_answer_proto_rawDesc = "" +
 	"\x11TravelTimesAnswer\x12\x15\n" +
 	"\x06from_m\x18\x01 \x01(\x01R\x05fromM\x12\x11\n" +
 	"\x04to_m\x18\x02 \x01(\x01R\x03toM\x12(\n" +
-	"\x05trips\x18\x03 \x03(\v2\x12.roadswell.v1.TripR\x05trips\"\xc6\x02\n" +
+	"\x05trips\x18\x03 \x03(\v2\x12.roadswell.v1.TripR\x05trips\"\x96\x03\n" +
 	"\x04Trip\x12\x1f\n" +
 	"\vdeparture_s\x18\x01 \x01(\x01R\n" +
 	"departureS\x12\x18\n" +
@@ -2733,13 +2743,15 @@ const file_roadswell_v1_answer_proto_rawDesc = "" +
 	"\rtravel_time_s\x18\x04 \x01(\x01H\x01R\vtravelTimeS\x88\x01\x01\x12/\n" +
 	"\x11waiting_outside_s\x18\x05 \x01(\x01H\x02R\x0fwaitingOutsideS\x88\x01\x01\x12'\n" +
 	"\x10free_flow_time_s\x18\x06 \x01(\x01R\rfreeFlowTimeS\x12\x1c\n" +
-	"\adelay_s\x18\a \x01(\x01H\x03R\x06delayS\x88\x01\x01B\f\n" +
+	"\adelay_s\x18\a \x01(\x01H\x03R\x06delayS\x88\x01\x01\x125\n" +
+	"\x14instantaneous_time_s\x18\b \x01(\x01H\x04R\x12instantaneousTimeS\x88\x01\x01B\f\n" +
 	"\n" +
 	"_arrival_sB\x10\n" +
 	"\x0e_travel_time_sB\x14\n" +
 	"\x12_waiting_outside_sB\n" +
 	"\n" +
-	"\b_delay_s\"_\n" +
+	"\b_delay_sB\x17\n" +
+	"\x15_instantaneous_time_s\"_\n" +
 	"\x15CharacteristicsAnswer\x12F\n" +
 	"\x0fcharacteristics\x18\x01 \x03(\v2\x1c.roadswell.v1.CharacteristicR\x0fcharacteristics\"i\n" +
 	"\x0eCharacteristic\x12&\n" +
