@@ -7,7 +7,9 @@ import (
 )
 
 // Cycle is what happens at a signal from the beginning of one red to the beginning of the next. A plan with several
-// greens in its cycle has as many of these.
+// greens in its cycle has as many of these. Its queue is that of the signal (see [Queue]): where a queue from further
+// downstream has grown back over the signal, what stands there belongs to that one, and only Departed and Delay tell of
+// it.
 type Cycle struct {
 	// Start is when red begins, Green when green does, and End when that ends [s]; as far as they lie within the
 	// solved time, else its nearest end.

@@ -2461,7 +2461,9 @@ func (x *SignalCycles) GetCycles() []*Cycle {
 }
 
 // Cycle is what happens at a signal from the beginning of one red to the beginning of the next. A plan with several
-// greens in its cycle has as many of these. The forecast is advisory: it is not an instruction to a signal controller.
+// greens in its cycle has as many of these. Its queue is the one that belongs to the signal (see NodeQueues): where a
+// queue from further downstream has grown back over the signal, what stands there belongs to that one, and only
+// departed vehicles and delay tell of it. The forecast is advisory: it is not an instruction to a signal controller.
 type Cycle struct {
 	state protoimpl.MessageState `protogen:"open.v1"`
 	// When red begins, s; 0 where it began before.
