@@ -984,9 +984,10 @@ type ProfileLaw struct {
 	DensityVehPerKm float64 `protobuf:"fixed64,1,opt,name=density_veh_per_km,json=densityVehPerKm,proto3" json:"density_veh_per_km,omitempty"`
 	// Speed at which that density travels, km/h; negative upstream.
 	WaveSpeedKmPerH float64 `protobuf:"fixed64,2,opt,name=wave_speed_km_per_h,json=waveSpeedKmPerH,proto3" json:"wave_speed_km_per_h,omitempty"`
-	// Flow that passes an observer who travels at that speed, veh/h; negative where they overtake the vehicles.
+	// Rate at which vehicles pass an observer who travels with that density's wave, veh/h; 0 or more.
 	PassingFlowVehPerH float64 `protobuf:"fixed64,3,opt,name=passing_flow_veh_per_h,json=passingFlowVehPerH,proto3" json:"passing_flow_veh_per_h,omitempty"`
-	// Inverse of the change of density with place at the birth, km² per vehicle. Absent: a uniform state.
+	// Inverse of the change of density with place at the birth, km² per vehicle: positive where density rises downstream,
+	// negative where it falls, as in a fan. Absent: a uniform state.
 	SpreadKm2PerVeh *float64 `protobuf:"fixed64,4,opt,name=spread_km2_per_veh,json=spreadKm2PerVeh,proto3,oneof" json:"spread_km2_per_veh,omitempty"`
 	// Change of the spread with time, km² per vehicle and hour; 0 or less. Absent: a uniform state.
 	SpreadRateKm2PerVehH *float64 `protobuf:"fixed64,5,opt,name=spread_rate_km2_per_veh_h,json=spreadRateKm2PerVehH,proto3,oneof" json:"spread_rate_km2_per_veh_h,omitempty"`

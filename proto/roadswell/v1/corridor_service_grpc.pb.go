@@ -37,8 +37,9 @@ type CorridorServiceClient interface {
 	// Solve solves one scenario and answers all questions about it from that one solution. It keeps nothing: equal
 	// requests get equal answers, and a call may be repeated safely.
 	//
-	// Every refusal carries a google.rpc.ErrorInfo with the domain "roadswell" and one of the names of ErrorReason,
-	// without its prefix, as the reason. Status codes:
+	// Every refusal by the service carries a google.rpc.ErrorInfo with the domain "roadswell" and one of the names of
+	// ErrorReason, without its prefix, as the reason. What the caller's own library reports (a deadline that passed there,
+	// a connection that was lost) carries none. Status codes:
 	//
 	//   - OK: solved; every question is answered.
 	//   - INVALID_ARGUMENT, INVALID_REQUEST: something in the request cannot be accepted. A google.rpc.BadRequest
@@ -54,7 +55,8 @@ type CorridorServiceClient interface {
 	//     code without ErrorInfo comes from the transport: the message itself is larger than the server takes in.
 	//   - DEADLINE_EXCEEDED, OUT_OF_TIME: the caller's deadline, or this server's own, passed.
 	//   - CANCELLED, CANCELLED: the caller gave up.
-	//   - INTERNAL, INTERNAL_ERROR: a fault in the server. It is safe to repeat the call; please report it.
+	//   - INTERNAL, INTERNAL_ERROR: a fault in the server. Nothing was changed, but the same call will most likely fail again;
+	//     please report it.
 	//   - UNAVAILABLE (from the transport): the server cannot be reached or is stopping; repeat the call.
 	Solve(ctx context.Context, in *SolveRequest, opts ...grpc.CallOption) (*SolveResponse, error)
 }
@@ -90,8 +92,9 @@ type CorridorServiceServer interface {
 	// Solve solves one scenario and answers all questions about it from that one solution. It keeps nothing: equal
 	// requests get equal answers, and a call may be repeated safely.
 	//
-	// Every refusal carries a google.rpc.ErrorInfo with the domain "roadswell" and one of the names of ErrorReason,
-	// without its prefix, as the reason. Status codes:
+	// Every refusal by the service carries a google.rpc.ErrorInfo with the domain "roadswell" and one of the names of
+	// ErrorReason, without its prefix, as the reason. What the caller's own library reports (a deadline that passed there,
+	// a connection that was lost) carries none. Status codes:
 	//
 	//   - OK: solved; every question is answered.
 	//   - INVALID_ARGUMENT, INVALID_REQUEST: something in the request cannot be accepted. A google.rpc.BadRequest
@@ -107,7 +110,8 @@ type CorridorServiceServer interface {
 	//     code without ErrorInfo comes from the transport: the message itself is larger than the server takes in.
 	//   - DEADLINE_EXCEEDED, OUT_OF_TIME: the caller's deadline, or this server's own, passed.
 	//   - CANCELLED, CANCELLED: the caller gave up.
-	//   - INTERNAL, INTERNAL_ERROR: a fault in the server. It is safe to repeat the call; please report it.
+	//   - INTERNAL, INTERNAL_ERROR: a fault in the server. Nothing was changed, but the same call will most likely fail again;
+	//     please report it.
 	//   - UNAVAILABLE (from the transport): the server cannot be reached or is stopping; repeat the call.
 	Solve(context.Context, *SolveRequest) (*SolveResponse, error)
 	mustEmbedUnimplementedCorridorServiceServer()

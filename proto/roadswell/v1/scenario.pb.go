@@ -80,7 +80,8 @@ func (ExcessDemand) EnumDescriptor() ([]byte, []int) {
 //
 // Places are metres along the road, growing downstream (the way traffic goes). Times are seconds from the
 // scenario's time 0; the caller decides which moment that is. Flows and densities are those of all lanes
-// together, save in FlowDensityRelation, which describes one lane. Every number must be finite.
+// together, save in FlowDensityRelation, which describes one lane. Every number must be finite. Callers who think in
+// miles convert exactly: 1 mi is 1.609344 km (mph * 1.609344 = km/h, veh/mi / 1.609344 = veh/km) and 1 ft is 0.3048 m.
 //
 // Some bounds lie far outside anything built and are not repeated at each field: places are within 10,000 km of 0,
 // flows at most 3.6e9 veh/h. A server also bounds how many entries a list may have (FIELD_REASON_LIMIT).
