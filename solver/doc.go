@@ -43,8 +43,8 @@
 // # Reading order
 //
 // relation.go, diagram.go, region.go, front.go, riemann.go, meeting.go, crossing.go and overlooked.go with cubic.go
-// and root.go, node.go, offer.go, send.go, plan.go, agenda.go, kernel.go, merge.go; then scenario.go, schedule.go, timetable.go,
-// layout.go, build.go and initial.go for what goes in, validate.go for what may; and solution.go, index.go, fronts.go,
-// queues.go (strips.go, queue_paths.go, peaks.go, cycles.go), trajectory.go (walk.go), polyline.go, trips.go, instantaneous.go, characteristic.go
-// and totals.go for what can be asked.
+// and root.go, node.go, offer.go, send.go, plan.go, agenda.go, kernel.go, merge.go; then scenario.go, schedule.go,
+// timetable.go, layout.go, build.go and initial.go for what goes in, validate.go for what may; and solution.go,
+// index.go, fronts.go, queues.go (strips.go, queue_paths.go, peaks.go, cycles.go), trajectory.go (walk.go),
+// polyline.go, trips.go, instantaneous.go, characteristic.go and totals.go for what can be asked.
 package solver
